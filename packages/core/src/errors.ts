@@ -48,6 +48,7 @@ export class MeasurementError extends Error {
   override readonly name: string = 'MeasurementError';
   readonly code: MeasurementErrorCode;
   readonly path: string | undefined;
+  readonly expected: string | undefined;
   readonly received: unknown;
   readonly hint: string | undefined;
 
@@ -55,8 +56,27 @@ export class MeasurementError extends Error {
     super(messageOf(code, details), details.cause === undefined ? undefined : { cause: details.cause });
     this.code = code;
     this.path = details.path;
+    this.expected = details.expected;
     this.received = details.received;
     this.hint = details.hint;
+  }
+}
+
+/** Runs a check and puts a prefix before the path of what it throws. */
+export function within<Result>(prefix: string, check: () => Result): Result {
+  try {
+    return check();
+  } catch (error) {
+    if (!isMeasurementError(error)) throw error;
+    const path = error.path === undefined || error.path === '' ? prefix : `${prefix}.${error.path}`;
+    const { code, expected, received, hint } = error;
+    throw new MeasurementError(code, {
+      path,
+      received,
+      cause: error,
+      ...(expected === undefined ? {} : { expected }),
+      ...(hint === undefined ? {} : { hint }),
+    });
   }
 }
 

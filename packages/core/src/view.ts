@@ -115,3 +115,52 @@ export function checkView(value: unknown, path: string): asserts value is View {
 export function sameShape(a: readonly number[], b: readonly number[]): boolean {
   return a.length === b.length && a.every((extent, axis) => extent === b[axis]);
 }
+
+/** A view with its strides laid over the axes of a frame: axes it does not have step by 0. */
+export interface Operand {
+  readonly stride: readonly number[];
+  readonly offset: number;
+}
+
+/** Lays a map over the last axes of a frame's shape. */
+export function broadcast(map: View, shape: readonly number[], path: string): Operand {
+  const missing = shape.length - map.shape.length;
+  if (missing >= 0 && sameShape(map.shape, shape.slice(missing)) && (missing === 0 || map.shape.length === 2)) {
+    return { stride: [...new Array<number>(missing).fill(0), ...map.stride], offset: map.offset };
+  }
+  throw new MeasurementError('wrong-shape', {
+    path,
+    expected: `a map of shape [${shape.slice(-2).join(', ')}]${shape.length > 2 ? ` or [${shape.join(', ')}]` : ''}`,
+    received: map.shape,
+  });
+}
+
+/**
+ * Walks a shape row by row: `visit` gets the start of the row in every operand and the row's length; it steps by
+ * the operand's last stride.
+ */
+export function forEachRow(
+  shape: readonly number[],
+  operands: readonly Operand[],
+  visit: (starts: readonly number[], length: number) => void,
+): void {
+  if (shape.includes(0)) return;
+  const starts = operands.map((operand) => operand.offset);
+  const length = shape.at(-1) ?? 1;
+  const outer = shape.slice(0, -1);
+  const index = outer.map(() => 0);
+  for (;;) {
+    visit(starts, length);
+    let axis = outer.length - 1;
+    for (; axis >= 0; axis--) {
+      const wraps = index[axis]! + 1 === outer[axis]!;
+      const by = wraps ? -index[axis]! : 1;
+      operands.forEach((operand, i) => {
+        starts[i]! += by * operand.stride[axis]!;
+      });
+      index[axis]! += by;
+      if (!wraps) break;
+    }
+    if (axis < 0) return;
+  }
+}

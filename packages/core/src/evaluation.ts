@@ -1,0 +1,62 @@
+/**
+ * Filling the input vector of a measurement equation, for one place: from numbers, or from the cells of maps.
+ */
+import { ratio, temperature, notNegative } from './check.js';
+import { MeasurementError } from './errors.js';
+import { type Affine, compose, type EquationInput, type MeasurementEquation } from './measurement-equation.js';
+import { type Pixel, type Scalar, scalarAt } from './scalar.js';
+import { isView } from './view.js';
+
+/** An equation at one place: its inputs as numbers, x, gain and offset. */
+export interface EquationAt extends Affine {
+  readonly equation: MeasurementEquation;
+  /** Input vector: ratios, and radiances of the temperatures. */
+  readonly x: Float64Array;
+  /** The inputs themselves by slot: ratios, kelvin, radiances. */
+  readonly value: Float64Array;
+}
+
+/** Whether any input is a map. */
+export function hasMaps(equation: MeasurementEquation): boolean {
+  return equation.inputs.some((input) => isView(input.value));
+}
+
+/**
+ * Evaluates the inputs at a pixel, or without one where no input is a map.
+ *
+ * @throws {MeasurementError} `needs-pixel` for a map without a pixel; `not-finite`, `out-of-range` for a bad cell.
+ */
+export function equationAt(equation: MeasurementEquation, pixel: Pixel | undefined): EquationAt {
+  const x = new Float64Array(equation.slots);
+  const value = new Float64Array(equation.slots);
+  x[1] = 1;
+  for (const input of equation.inputs) {
+    if (input.kind === 'curve') continue;
+    const number = checkedCell(input, scalarAt(input.value as Scalar, pixel, input.name));
+    value[input.slot] = number;
+    x[input.slot] = input.kind === 'temperature' ? input.band.exact.radiance(number) : number;
+  }
+  const affine: Affine = { gain: 0, offset: 0 };
+  compose(equation, x, affine);
+  if (Number.isNaN(affine.gain)) {
+    throw new MeasurementError('out-of-range', {
+      path: pixel ? `[${pixel.row}][${pixel.column}]` : 'conditions',
+      expected: 'emissivity + transmittance of the target ≤ 1, transmittance + reflectance of a layer ≤ 1',
+      received: 'a sum above 1',
+    });
+  }
+  return { equation, x, value, ...affine };
+}
+
+function checkedCell(input: EquationInput, value: number): number {
+  switch (input.kind) {
+    case 'positive ratio':
+      return ratio(value, input.name, 'above 0');
+    case 'ratio':
+      return ratio(value, input.name);
+    case 'temperature':
+      return temperature(value, input.name);
+    default:
+      return notNegative(value, input.name);
+  }
+}
