@@ -1,8 +1,17 @@
 /**
  * Parameters per area: parts of one frame corrected with conditions of their own.
  */
+
+import { saturatedCaution } from './cautions.js';
 import { MeasurementError } from './errors.js';
-import { type FrameInput, type FrameOutput, type SurfaceFrame, summary, surfaceFrameOf } from './frame.js';
+import {
+  type FrameInput,
+  type FrameOutput,
+  frameCautions,
+  type SurfaceFrame,
+  summary,
+  surfaceFrameOf,
+} from './frame.js';
 import type { MeasurementModel } from './measurement.js';
 import type { Recorrection } from './recorrection.js';
 import { checkedRegion, forEachPixel, type Region, regionBounds } from './regions.js';
@@ -32,7 +41,11 @@ export function surfaceFrameByArea<Model extends MeasurementModel | Recorrection
   const input = isView(frame) ? frame : frame.array;
   const shape = input.shape;
   if (areas.length > 0 && shape.length < 2) {
-    throw new MeasurementError('wrong-shape', { path: 'frame', expected: 'rows and columns', received: shape });
+    throw new MeasurementError('wrong-shape', {
+      path: 'frame',
+      expected: 'rows and columns',
+      received: shape,
+    });
   }
   const plane = shape.slice(-2) as [number, number];
   // Areas first: the output may be the input.
@@ -47,14 +60,31 @@ export function surfaceFrameByArea<Model extends MeasurementModel | Recorrection
     const { rows, columns } = regionBounds(checkedRegion(region, `areas[${i}].region`), plane);
     const box: Box = own.needsPixel
       ? { row: 0, column: 0, height: plane[0], width: plane[1] }
-      : { row: rows[0], column: columns[0], height: rows[1] - rows[0] + 1, width: columns[1] - columns[0] + 1 };
+      : {
+          row: rows[0],
+          column: columns[0],
+          height: rows[1] - rows[0] + 1,
+          width: columns[1] - columns[0] + 1,
+        };
     if (box.height <= 0 || box.width <= 0) return undefined;
     const cut = isView(frame) ? window(input, box) : { ...frame, array: window(input, box) };
     return { region, box, frame: surfaceFrameOf(own.engine, cut, undefined, 'part of a frame') };
   });
   const result = model.surfaceFrame(frame, out);
   for (const part of parts) if (part) paste(part.region, part.box, part.frame, result, plane);
-  return { ...result, ...recount(result.flags) };
+  const counted = recount(result.flags);
+  return { ...result, ...counted, cautions: areaCautions(model, areas, counted.counts.saturated) };
+}
+
+/** Cautions of the whole and of every area, each once. */
+function areaCautions(
+  model: MeasurementModel | Recorrection,
+  areas: readonly Area[],
+  saturated: number,
+): SurfaceFrame['cautions'] {
+  const all = [model, ...areas.map((area) => area.model)].flatMap(({ engine }) => frameCautions(engine, 0));
+  const once = [...new Map(all.map((caution) => [caution.message, caution])).values()];
+  return Object.freeze(saturated > 0 ? [...once, saturatedCaution(`${saturated} pixels are`)] : once);
 }
 
 interface Box {
@@ -75,7 +105,13 @@ function window(source: View, { row, column, height, width }: Box): View {
   };
 }
 
-function paste(region: Region, box: Box, part: SurfaceFrame, whole: SurfaceFrame, plane: [number, number]): void {
+function paste(
+  region: Region,
+  box: Box,
+  part: SurfaceFrame,
+  whole: SurfaceFrame,
+  plane: [number, number],
+): void {
   const frames = whole.temperature.shape.slice(0, -2);
   const layers = [part.temperature, part.flags, whole.temperature, whole.flags];
   const last = frames.length + 1;

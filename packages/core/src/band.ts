@@ -5,84 +5,22 @@
  * Proven for any band inside 2–15 µm: temperature(radiance(T)) within 0.1 mK from −40 to 2000 °C and within 1 mK
  * from −60 to 3000 °C; radiance within 1e-10 relative, 150–3500 K. Asserted in test/band.test.ts.
  */
-import { finiteNumber, oneOf, plainObject, positive, temperature as checkTemperature } from './check.js';
+import { temperature as checkTemperature, finiteNumber, oneOf, plainObject, positive } from './check.js';
 import { type Curve, product, type SpectralFunction, spectralFunction } from './curve.js';
+import type {
+  BandDescriptor,
+  CalibratedDescriptor,
+  Calibration,
+  Detector,
+  RadianceUnit,
+  SampledDescriptor,
+} from './descriptor.js';
 import { MeasurementError } from './errors.js';
 import { calibratedKernel, monochromaticKernel, quadratureKernel } from './kernel.js';
 import { photonsPerJoule } from './planck.js';
 import { type Rule, wavelengthRule } from './quadrature.js';
 import { type RadianceKernel, tabulated } from './table.js';
 import { type AnyKelvin, highestTemperature, type Kelvin, lowestTemperature } from './units.js';
-
-/** What a detector answers to: the energy or the number of photons it receives. */
-export type Detector = 'energy' | 'photon';
-
-/** Unit of a band's radiance: in-band, spectral (a single wavelength), or a calibrated signal. */
-export type RadianceUnit = 'W·m⁻²·sr⁻¹' | 'W·m⁻²·sr⁻¹·µm⁻¹' | 'signal';
-
-/** A top-hat band as plain data. */
-export interface TopHatDescriptor {
-  readonly kind: 'top-hat';
-  /** Lower limit. [µm] */
-  readonly from: number;
-  /** Upper limit. [µm] */
-  readonly to: number;
-  readonly detector?: Detector;
-}
-/** A sampled band as plain data: responsivity over wavelength [µm] or wavenumber [cm⁻¹]. */
-export type SampledDescriptor = {
-  readonly kind: 'sampled';
-  readonly responsivity: readonly number[];
-  readonly detector?: Detector;
-} & ({ readonly wavelength: readonly number[] } | { readonly wavenumber: readonly number[] });
-/** A single wavelength as plain data. */
-export interface MonochromaticDescriptor {
-  readonly kind: 'monochromatic';
-  /** Wavelength. [µm] */
-  readonly wavelength: number;
-}
-/** A calibrated band as plain data; see {@link calibratedBand}. */
-export type CalibratedDescriptor = { readonly kind: 'calibrated' } & Calibration;
-/** A band weighted by a curve, as plain data. */
-export interface WeightedDescriptor {
-  readonly kind: 'weighted';
-  readonly band: BandDescriptor;
-  readonly curve: Curve;
-}
-/** A band as plain data, for JSON. {@link bandFromDescriptor} makes the band. */
-export type BandDescriptor =
-  | TopHatDescriptor
-  | SampledDescriptor
-  | MonochromaticDescriptor
-  | CalibratedDescriptor
-  | WeightedDescriptor;
-
-/** Constants of a calibrated band: temperature ↔ signal by a formula. */
-export type Calibration = (
-  | {
-      /** signal = k1 / (exp(k2/T) − 1): one effective wavelength, as space radiometers publish it. */
-      readonly form: 'k1k2';
-      /** In the unit of the signal. */
-      readonly k1: number;
-      /** [K] */
-      readonly k2: number;
-    }
-  | {
-      /** signal = c / (exp(c₂/(a·T + b)) − 1): the Planckian form of Sakuma and Hattori (CCT-WG5, 2008). */
-      readonly form: 'sakuma-hattori';
-      /** [µm] */
-      readonly a: number;
-      /** [µm·K] */
-      readonly b: number;
-      /** In the unit of the signal. */
-      readonly c: number;
-    }
-) & {
-  /** Unit of the signal; `signal` when not said. */
-  readonly radianceUnit?: RadianceUnit;
-  /** Temperatures the calibration holds for; 150…3500 K when not said. [K] */
-  readonly range?: { readonly from: AnyKelvin; readonly to: AnyKelvin };
-};
 
 /**
  * How a detector weights wavelength. Made by {@link topHatBand}, {@link sampledBand}, {@link monochromaticBand},
@@ -154,7 +92,11 @@ export function topHatBand(from: number, to: number, options: { readonly detecto
   const { detector } = detectorOf(options, '', ['detector']);
   limit(from, 'from');
   if (limit(to, 'to') <= from) {
-    throw new MeasurementError('out-of-range', { path: 'to', expected: `a limit above from = ${from} µm`, received: to });
+    throw new MeasurementError('out-of-range', {
+      path: 'to',
+      expected: `a limit above from = ${from} µm`,
+      received: to,
+    });
   }
   const flat: SpectralFunction = { breakpoints: [from, to], at: () => 1 };
   return spectralBand(withDetector(flat, detector), { kind: 'top-hat', from, to, ...detectorKey(detector) });
@@ -178,7 +120,11 @@ export function sampledBand(
   limit(response.breakpoints[0]!, 'wavelength');
   limit(response.breakpoints.at(-1)!, 'wavelength');
   if (!samples.responsivity.some((value) => value > 0)) {
-    throw new MeasurementError('out-of-range', { path: 'responsivity', expected: 'some value above 0', received: 0 });
+    throw new MeasurementError('out-of-range', {
+      path: 'responsivity',
+      expected: 'some value above 0',
+      received: 0,
+    });
   }
   const responsivity = [...samples.responsivity];
   const descriptor: SampledDescriptor =
@@ -208,7 +154,10 @@ export function monochromaticBand(wavelength: number): Band {
  * @throws {MeasurementError} `wrong-type`, `not-finite`, `out-of-range`, `unknown-key`.
  */
 export function calibratedBand(calibration: Calibration): Band {
-  const form = oneOf((calibration as { form?: unknown } | null)?.form, 'form', ['k1k2', 'sakuma-hattori'] as const);
+  const form = oneOf((calibration as { form?: unknown } | null)?.form, 'form', [
+    'k1k2',
+    'sakuma-hattori',
+  ] as const);
   const keys = form === 'k1k2' ? ['k1', 'k2'] : ['a', 'b', 'c'];
   const record = plainObject(calibration, '', ['form', ...keys, 'radianceUnit', 'range']);
   for (const key of keys) {
@@ -223,7 +172,11 @@ export function calibratedBand(calibration: Calibration): Band {
     to: (given ? checkTemperature(given.to, 'range.to') : highestTemperature) as Kelvin,
   };
   if (range.to <= range.from) {
-    throw new MeasurementError('out-of-range', { path: 'range.to', expected: `above ${range.from} K`, received: range.to });
+    throw new MeasurementError('out-of-range', {
+      path: 'range.to',
+      expected: `above ${range.from} K`,
+      received: range.to,
+    });
   }
   if ('a' in calibration && !(calibration.a * range.from + calibration.b > 0)) {
     throw new MeasurementError('out-of-range', {
@@ -267,7 +220,13 @@ export function bandFromDescriptor(descriptor: BandDescriptor): Band {
 
 /** Whether a value is a band made by this package. */
 export function isBand(value: unknown): value is Band {
-  return typeof value === 'object' && value !== null && 'descriptor' in value && 'exact' in value && 'weightedBy' in value;
+  return (
+    typeof value === 'object' &&
+    value !== null &&
+    'descriptor' in value &&
+    'exact' in value &&
+    'weightedBy' in value
+  );
 }
 
 const detectors = ['energy', 'photon'] as const;
@@ -329,7 +288,9 @@ function finished(
     descriptor: Object.freeze(descriptor),
     radianceUnit,
     range: Object.freeze(range),
-    limits: responsivity && Object.freeze({ from: responsivity.breakpoints[0]!, to: responsivity.breakpoints.at(-1)! }),
+    limits:
+      responsivity &&
+      Object.freeze({ from: responsivity.breakpoints[0]!, to: responsivity.breakpoints.at(-1)! }),
     exact,
     responsivity,
     get fast() {
@@ -405,6 +366,8 @@ function detectorKey(detector: Detector): { detector?: Detector } {
 function withDetector(response: SpectralFunction, detector: Detector): SpectralFunction {
   if (detector === 'energy') return response;
   const middle = (response.breakpoints[0]! + response.breakpoints.at(-1)!) / 2;
-  return { breakpoints: response.breakpoints, at: (wavelength) => (response.at(wavelength) * wavelength) / middle };
+  return {
+    breakpoints: response.breakpoints,
+    at: (wavelength) => (response.at(wavelength) * wavelength) / middle,
+  };
 }
-

@@ -4,9 +4,8 @@
  * The limits are common practice of the trade, no source, unless said otherwise beside them.
  */
 import type { Conditions } from './conditions.js';
-import type { EngineAt } from './model.js';
-import { termsAt } from './model.js';
-import { toCelsius, type AnyKelvin } from './units.js';
+import { type EngineAt, saturationOf, termsAt } from './model.js';
+import { type AnyKelvin, toCelsius } from './units.js';
 
 /** Every code a {@link Caution} can carry. docs/ERRORS.md has a line on each. */
 export const cautionCodes = [
@@ -64,7 +63,8 @@ export function conditionCautions(conditions: Conditions, resolution?: number): 
         reflectedMeasuredAt === 'instrument'
           ? 'The reflected apparent temperature was measured on the instrument side of a window.'
           : 'There is a window on the path, and nothing says where the reflected apparent temperature was measured.',
-      remedy: 'Behind a window it is the inside of the enclosure: measure it there and state reflectedMeasuredAt: "target".',
+      remedy:
+        'Behind a window it is the inside of the enclosure: measure it there and state reflectedMeasuredAt: "target".',
     });
   }
   if (band.limits && (band.limits.from < 2 || band.limits.to > 15)) {
@@ -78,7 +78,8 @@ export function conditionCautions(conditions: Conditions, resolution?: number): 
     cautions.push({
       code: 'recorded-rounded',
       message: `Recorded temperatures are rounded to steps of ${resolution} K.`,
-      remedy: 'Half a step is in the budget as a rectangular distribution; use unrounded data where there is some.',
+      remedy:
+        'Half a step is in the budget as a rectangular distribution; use unrounded data where there is some.',
     });
   }
   return cautions;
@@ -94,17 +95,12 @@ export function readingCautions(at: EngineAt, reading: AnyKelvin, surface: AnyKe
     cautions.push({
       code: 'reflected-dominates',
       message: `${Math.round(100 * reflected.share)} % of the radiance is reflected from the surroundings.`,
-      remedy: 'Raise the emissivity (coating, tape), shield the surroundings, or measure their reflected temperature closely.',
+      remedy:
+        'Raise the emissivity (coating, tape), shield the surroundings, or measure their reflected temperature closely.',
     });
   }
-  const range = (recorded ?? engine.conditions).instrument?.measuringRange;
-  if (range && (reading <= range.from || reading >= range.to)) {
-    cautions.push({
-      code: 'saturated',
-      message: `The reading is at the ${reading >= range.to ? 'upper' : 'lower'} end of the measuring range: the true value lies there or beyond.`,
-      remedy: 'Choose another measuring range and measure again.',
-    });
-  }
+  const ends = saturationOf(engine);
+  if (ends && (reading <= ends.from || reading >= ends.to)) cautions.push(saturatedCaution('The reading is'));
   const celsius = toCelsius(surface);
   if (celsius < -40 || celsius > 2000) {
     cautions.push({
@@ -122,6 +118,15 @@ export function readingCautions(at: EngineAt, reading: AnyKelvin, surface: AnyKe
     });
   }
   return cautions;
+}
+
+/** The caution of a reading, or of pixels, at an end of the measuring range. */
+export function saturatedCaution(subject: string): Caution {
+  return {
+    code: 'saturated',
+    message: `${subject} at an end of the measuring range: the true value lies there or beyond.`,
+    remedy: 'Choose another measuring range and measure again.',
+  };
 }
 
 /**

@@ -7,7 +7,8 @@ import { type AnyKelvin, highestTemperature, lowestTemperature } from './units.j
 
 /** A finite number. */
 export function finiteNumber(value: unknown, path: string, expected = 'a number'): number {
-  if (typeof value !== 'number') throw new MeasurementError('wrong-type', { path, expected, received: value });
+  if (typeof value !== 'number')
+    throw new MeasurementError('wrong-type', { path, expected, received: value });
   if (!Number.isFinite(value)) {
     throw new MeasurementError('not-finite', { path, expected: 'a finite number', received: value });
   }
@@ -62,7 +63,7 @@ export function oneOf<Word extends string>(value: unknown, path: string, words: 
     path,
     expected: `one of ${words.map((word) => `'${word}'`).join(', ')}`,
     received: value,
-    ...suggestion(value, words),
+    ...nearest(value, words),
   });
 }
 
@@ -81,7 +82,7 @@ export function plainObject(value: unknown, path: string, keys: readonly string[
         path: path === '' ? key : `${path}.${key}`,
         expected: `only the keys ${keys.join(', ')}`,
         received: key,
-        ...suggestion(key, keys),
+        ...nearest(key, keys),
       });
     }
   }
@@ -91,7 +92,8 @@ export function plainObject(value: unknown, path: string, keys: readonly string[
 /** A list of finite numbers, in a plain or a typed array. */
 export function numberList(value: unknown, path: string): readonly number[] {
   const isList = Array.isArray(value) || (ArrayBuffer.isView(value) && !(value instanceof DataView));
-  if (!isList) throw new MeasurementError('wrong-type', { path, expected: 'a list of numbers', received: value });
+  if (!isList)
+    throw new MeasurementError('wrong-type', { path, expected: 'a list of numbers', received: value });
   const list = Array.from(value as ArrayLike<unknown>);
   list.forEach((item, index) => {
     finiteNumber(item, `${path}[${index}]`);
@@ -99,15 +101,17 @@ export function numberList(value: unknown, path: string): readonly number[] {
   return list as number[];
 }
 
-function suggestion(word: unknown, words: readonly string[]): { hint?: string } {
+/** The hint `Did you mean …?` with the nearest of a few words, where one is near. */
+export function nearest(word: unknown, words: readonly string[]): { hint?: string } {
   if (typeof word !== 'string') return {};
-  let nearest = '';
+  let closest = '';
   let least = Number.POSITIVE_INFINITY;
   for (const candidate of words) {
+    if (candidate === word) continue;
     const distance = editDistance(word.toLowerCase(), candidate.toLowerCase());
-    if (distance < least) [nearest, least] = [candidate, distance];
+    if (distance < least) [closest, least] = [candidate, distance];
   }
-  return least <= Math.max(2, Math.floor(nearest.length * 0.6)) ? { hint: `Did you mean '${nearest}'?` } : {};
+  return least <= Math.max(2, Math.floor(closest.length * 0.6)) ? { hint: `Did you mean '${closest}'?` } : {};
 }
 
 /** Levenshtein distance of two short words. */

@@ -97,7 +97,14 @@ export type RecordedConditions = Pick<
   readonly resolution?: number;
 };
 
-const recordedKeys = ['band', 'emissivity', 'reflectedApparentTemperature', 'path', 'instrument', 'resolution'] as const;
+const recordedKeys = [
+  'band',
+  'emissivity',
+  'reflectedApparentTemperature',
+  'path',
+  'instrument',
+  'resolution',
+] as const;
 
 /** Checks conditions and copies them into a frozen record. */
 export function checkedConditions(input: unknown): Conditions {
@@ -111,7 +118,11 @@ export function checkedConditions(input: unknown): Conditions {
     });
   }
   const emissivity = ratioOrCurve(given.emissivity, 'emissivity', 'above 0');
-  const checked: { -readonly [Key in keyof Conditions]: Conditions[Key] } = { ...given, band: given.band, emissivity };
+  const checked: { -readonly [Key in keyof Conditions]: Conditions[Key] } = {
+    ...given,
+    band: given.band,
+    emissivity,
+  };
   checkReflected(given);
   if (given.path !== undefined) checked.path = checkedPath(given.path);
   if (given.surface !== undefined) checked.surface = checkedSurface(given.surface, emissivity);
@@ -133,7 +144,10 @@ export function checkedConditions(input: unknown): Conditions {
 }
 
 /** Checks recorded settings against the band of the actual conditions. */
-export function checkedRecorded(input: unknown, band: Band): Conditions & Pick<RecordedConditions, 'resolution'> {
+export function checkedRecorded(
+  input: unknown,
+  band: Band,
+): Conditions & Pick<RecordedConditions, 'resolution'> {
   const given = plainObject(input, 'recorded', recordedKeys) as Partial<RecordedConditions>;
   if (given.band !== undefined && JSON.stringify(given.band.descriptor) !== JSON.stringify(band.descriptor)) {
     throw new MeasurementError('wrong-band', {
@@ -192,7 +206,11 @@ function checkedSurface(surface: unknown, emissivity: Scalar | Curve): SurfaceTr
       received: emissivity,
     });
   }
-  if (typeof emissivity === 'number' && typeof transmittance === 'number' && emissivity + transmittance > 1 + 1e-12) {
+  if (
+    typeof emissivity === 'number' &&
+    typeof transmittance === 'number' &&
+    emissivity + transmittance > 1 + 1e-12
+  ) {
     throw new MeasurementError('out-of-range', {
       path: 'surface.transmittance',
       expected: 'emissivity + transmittance ≤ 1',
@@ -208,7 +226,11 @@ function checkedSurface(surface: unknown, emissivity: Scalar | Curve): SurfaceTr
   }
   return Object.freeze({
     transmittance,
-    backgroundApparentTemperature: scalar<TemperatureScalar>(background, 'surface.backgroundApparentTemperature', temperature),
+    backgroundApparentTemperature: scalar<TemperatureScalar>(
+      background,
+      'surface.backgroundApparentTemperature',
+      temperature,
+    ),
   });
 }
 
@@ -236,7 +258,11 @@ function checkInstrument(input: unknown): void {
   if (given.warmUp !== undefined) notNegative(given.warmUp, 'instrument.warmUp');
   for (const key of ['lens', 'calibrationDate']) {
     if (given[key] !== undefined && typeof given[key] !== 'string') {
-      throw new MeasurementError('wrong-type', { path: `instrument.${key}`, expected: 'a text', received: given[key] });
+      throw new MeasurementError('wrong-type', {
+        path: `instrument.${key}`,
+        expected: 'a text',
+        received: given[key],
+      });
     }
   }
 }
@@ -262,13 +288,19 @@ function checkAccuracy(input: unknown, hasRange: boolean): void {
 }
 
 /** Half-width of the accuracy an instrument states at a reading; undefined where it states none. [K] */
-export function accuracyHalfWidth(instrument: Instrument | undefined, apparent: AnyKelvin): number | undefined {
+export function accuracyHalfWidth(
+  instrument: Instrument | undefined,
+  apparent: AnyKelvin,
+): number | undefined {
   const accuracy = instrument?.accuracy;
   if (accuracy === undefined) return undefined;
   const { kelvin = 0, percent = 0, percentOf } = accuracy;
   const range = instrument?.measuringRange;
   const whole =
-    percentOf === 'celsius' ? Math.abs(toCelsius(apparent)) : percentOf === 'range' && range ? range.to - range.from : apparent;
+    percentOf === 'celsius'
+      ? Math.abs(toCelsius(apparent))
+      : percentOf === 'range' && range
+        ? range.to - range.from
+        : apparent;
   return Math.max(kelvin, (percent / 100) * whole);
 }
-

@@ -23,7 +23,10 @@ export interface SpectralFunction {
 /** Whether a value has the shape of a {@link Curve}. */
 export function isCurve(value: unknown): value is Curve {
   return (
-    typeof value === 'object' && value !== null && 'value' in value && ('wavelength' in value || 'wavenumber' in value)
+    typeof value === 'object' &&
+    value !== null &&
+    'value' in value &&
+    ('wavelength' in value || 'wavenumber' in value)
   );
 }
 

@@ -106,7 +106,8 @@ export function describe(value: unknown): string {
   if (typeof value === 'number' || typeof value === 'boolean' || value == null) return String(value);
   if (typeof value === 'bigint') return `${value}n`;
   if (typeof value === 'function') return 'a function';
-  if (Array.isArray(value)) return value.length <= 6 ? `[${value.map(describe).join(', ')}]` : `an array of ${value.length}`;
+  if (Array.isArray(value))
+    return value.length <= 6 ? `[${value.map(describe).join(', ')}]` : `an array of ${value.length}`;
   if (ArrayBuffer.isView(value)) return `a ${value.constructor.name}`;
   if (typeof value === 'object') {
     const keys = Object.keys(value);

@@ -1,9 +1,14 @@
 /**
  * Filling the input vector of a measurement equation, for one place: from numbers, or from the cells of maps.
  */
-import { ratio, temperature, notNegative } from './check.js';
+import { notNegative, ratio, temperature } from './check.js';
 import { MeasurementError } from './errors.js';
-import { type Affine, compose, type EquationInput, type MeasurementEquation } from './measurement-equation.js';
+import {
+  type Affine,
+  compose,
+  type EquationInput,
+  type MeasurementEquation,
+} from './measurement-equation.js';
 import { type Pixel, type Scalar, scalarAt } from './scalar.js';
 import { isView } from './view.js';
 

@@ -7,23 +7,28 @@
  * in test/frame.test.ts against the spot.
  */
 import type { Band } from './band.js';
-import { plainObject } from './check.js';
+import { type Caution, conditionCautions, saturatedCaution } from './cautions.js';
+import type { Conditions } from './conditions.js';
 import { MeasurementError } from './errors.js';
 import { equationAt, hasMaps } from './evaluation.js';
-import { type Affine, compose, type EquationInput, type MeasurementEquation } from './measurement-equation.js';
-import { type Engine, refuseQuantity, surfaceRange } from './model.js';
-import { type Quantity, type QuantityUnit, quantities } from './quantity.js';
+import { detached, frameView, outputOf, refuseOtherUnits } from './frame-io.js';
+import {
+  type Affine,
+  compose,
+  type EquationInput,
+  type MeasurementEquation,
+} from './measurement-equation.js';
+import { type Engine, saturationOf, surfaceRange } from './model.js';
+import type { Quantity, QuantityUnit } from './quantity.js';
 import { tableError } from './table.js';
 import { highestTemperature, lowestTemperature } from './units.js';
 import {
   broadcast,
-  checkView,
+  emptyView,
   forEachRow,
   isView,
   type NumericArray,
   type Operand,
-  rowMajorStride,
-  sameShape,
   sizeOf,
   type View,
 } from './view.js';
@@ -62,7 +67,9 @@ export type FrameInput =
   | { readonly array: View; readonly quantity: Quantity; readonly unit?: QuantityUnit | string | undefined };
 
 /** Where to write: an earlier result, or a float32 view for the temperatures (the input itself, for one). */
-export type FrameOutput = View<Float32Array> | { readonly temperature: View<Float32Array>; readonly flags: View<Uint8Array> };
+export type FrameOutput =
+  | View<Float32Array>
+  | { readonly temperature: View<Float32Array>; readonly flags: View<Uint8Array> };
 
 /** A frame of surface temperatures. */
 export interface SurfaceFrame {
@@ -78,6 +85,8 @@ export interface SurfaceFrame {
   readonly array: View<Float32Array>;
   readonly quantity: 'surface temperature';
   readonly unit: 'K';
+  /** Cautions that hold for the whole frame, and `saturated` where a pixel is. */
+  readonly cautions: readonly Caution[];
 }
 
 /**
@@ -88,7 +97,11 @@ export interface SurfaceFrame {
  */
 export function frameBuffer(shape: readonly number[]): View<Float32Array> {
   if (!Array.isArray(shape) || !shape.every((extent) => Number.isInteger(extent) && extent >= 0)) {
-    throw new MeasurementError('wrong-shape', { path: 'shape', expected: 'whole extents ≥ 0', received: shape });
+    throw new MeasurementError('wrong-shape', {
+      path: 'shape',
+      expected: 'whole extents ≥ 0',
+      received: shape,
+    });
   }
   return emptyView(new Float32Array(sizeOf(shape)), shape);
 }
@@ -104,15 +117,25 @@ export function surfaceFrameOf(
   if (part === 'whole frame') refuseOtherUnits(input, 'frame');
   const { temperature, flags } = outputOf(out, input.shape);
   const { band, targetBand } = engine.equation;
-  const range = (engine.recorded?.conditions ?? engine.conditions).instrument?.measuringRange;
-  return mapPixels(detached(input, temperature), temperature, flags, {
+  const pixels = mapPixels(detached(input, temperature), temperature, flags, {
     kernel: surfaceKernel(engine, input.shape),
-    // 1 mK: a float32 of the range's end may lie just inside it.
-    saturation: range && { from: range.from + 1e-3, to: range.to - 1e-3 },
+    saturation: saturationOf(engine),
     lowest: Math.max(surfaceRange.from, targetBand.range.from),
     highest: Math.min(surfaceRange.to, targetBand.range.to),
-    readable: { from: Math.max(lowestTemperature, band.range.from), to: Math.min(highestTemperature, band.range.to) },
+    readable: {
+      from: Math.max(lowestTemperature, band.range.from),
+      to: Math.min(highestTemperature, band.range.to),
+    },
   });
+  return { ...pixels, cautions: frameCautions(engine, pixels.counts.saturated) };
+}
+
+/** Cautions of the conditions, and of saturated pixels where there are some. */
+export function frameCautions(engine: Engine, saturated: number): readonly Caution[] {
+  const recorded = engine.recorded?.conditions as (Conditions & { resolution?: number }) | undefined;
+  const cautions = conditionCautions(engine.conditions, recorded?.resolution);
+  if (saturated > 0) cautions.push(saturatedCaution(`${saturated} pixels are`));
+  return Object.freeze(cautions);
 }
 
 /** Solution of one pixel: kelvin, NaN for none; or why not. */
@@ -142,9 +165,17 @@ function surfaceKernel(engine: Engine, shape: readonly number[]): PixelKernel {
   const target = equation.targetBand;
   const source = recorded?.equation.targetBand ?? equation.band;
   const actual = startOf(equation);
-  const settings = recorded ? startOf(recorded.equation) : { x: new Float64Array(2), affine: { gain: 1, offset: 0 } };
-  const maps = [...mapsOf(equation, actual.x, shape), ...(recorded ? mapsOf(recorded.equation, settings.x, shape) : [])];
-  const [lowest, highest] = [target.exact.radiance(target.range.from), target.exact.radiance(target.range.to)];
+  const settings = recorded
+    ? startOf(recorded.equation)
+    : { x: new Float64Array(2), affine: { gain: 1, offset: 0 } };
+  const maps = [
+    ...mapsOf(equation, actual.x, shape),
+    ...(recorded ? mapsOf(recorded.equation, settings.x, shape) : []),
+  ];
+  const [lowest, highest] = [
+    target.exact.radiance(target.range.from),
+    target.exact.radiance(target.range.to),
+  ];
   const { fast: sourceTable, exact: sourceExact } = source;
   const { fast: targetTable, exact: targetExact } = target;
 
@@ -172,7 +203,7 @@ function surfaceKernel(engine: Engine, shape: readonly number[]): PixelKernel {
       let mapSlopes = 0;
       if (maps.length > 0) {
         mapSlopes = readMaps(places, false);
-        if (mapSlopes !== mapSlopes) return INVALID;
+        if (Number.isNaN(mapSlopes)) return INVALID;
       }
       const seen = settings.affine.gain * sourceTable.radiance(reading) + settings.affine.offset;
       const radiance = (seen - actual.affine.offset) / actual.affine.gain;
@@ -236,12 +267,14 @@ function mapPixels(
   temperature: View<Float32Array>,
   flags: View<Uint8Array>,
   { kernel, saturation, lowest, highest, readable }: PixelRules,
-): SurfaceFrame {
+): Omit<SurfaceFrame, 'cautions'> {
   const { maps } = kernel;
   const places = maps.map(() => 0);
   const counts = new Float64Array(256);
   const last = input.shape.length - 1;
-  const steps = [input, temperature, flags, ...maps.map((map) => map.operand)].map((view) => view.stride[last] ?? 0);
+  const steps = [input, temperature, flags, ...maps.map((map) => map.operand)].map(
+    (view) => view.stride[last] ?? 0,
+  );
   const from = saturation?.from ?? Number.NEGATIVE_INFINITY;
   const to = saturation?.to ?? Number.POSITIVE_INFINITY;
   const { data } = input;
@@ -282,11 +315,13 @@ function flagOf(value: number, lowest: number): number {
   if (value === INVALID) return frameFlag['invalid-input'];
   if (value === NO_SOLUTION) return frameFlag['no-solution'];
   if (value === ABOVE) return frameFlag['result-above-range'];
-  return value === BELOW || value < lowest ? frameFlag['result-below-range'] : frameFlag['result-above-range'];
+  return value === BELOW || value < lowest
+    ? frameFlag['result-below-range']
+    : frameFlag['result-above-range'];
 }
 
 function readingFlag(reading: number, lowest: number): number {
-  if (reading !== reading) return frameFlag.missing;
+  if (Number.isNaN(reading)) return frameFlag.missing;
   if (!Number.isFinite(reading)) return frameFlag['not-finite'];
   return reading < lowest ? frameFlag['reading-below-range'] : frameFlag['reading-above-range'];
 }
@@ -299,7 +334,7 @@ export function summary(counts: Float64Array): Pick<SurfaceFrame, 'counts' | 'un
 }
 
 /** A frame of apparent temperature; see {@link apparentFrame}. */
-export interface ApparentFrame extends Omit<SurfaceFrame, 'quantity'> {
+export interface ApparentFrame extends Omit<SurfaceFrame, 'quantity' | 'cautions'> {
   readonly quantity: 'apparent temperature';
 }
 
@@ -322,7 +357,7 @@ export function apparentFrame(frame: FrameInput, band: Band, out?: FrameOutput):
     solve(radiance) {
       if (!(radiance > 0)) return NO_SOLUTION;
       const solution = band.fast.temperature(radiance);
-      if (solution === solution) return solution;
+      if (!Number.isNaN(solution)) return solution;
       return radiance < lowest ? BELOW : ABOVE;
     },
   };
@@ -334,91 +369,4 @@ export function apparentFrame(frame: FrameInput, band: Band, out?: FrameOutput):
     readable: { from: -Number.MAX_VALUE, to: Number.MAX_VALUE },
   });
   return { ...result, quantity: 'apparent temperature' };
-}
-
-/** The view of a frame, refused unless it holds the quantity wanted. */
-function frameView(frame: unknown, reads: Quantity): View {
-  if (typeof frame === 'object' && frame !== null && 'quantity' in frame) {
-    const { quantity, array } = frame as { quantity: unknown; array?: unknown };
-    if (!(quantities as readonly unknown[]).includes(quantity)) {
-      throw new MeasurementError('wrong-quantity', { path: 'frame.quantity', expected: reads, received: quantity });
-    }
-    refuseQuantity(quantity, reads, 'frame');
-    const unit = (frame as { unit?: unknown }).unit;
-    if (reads !== 'band radiance' && unit !== undefined && unit !== 'K') {
-      throw new MeasurementError('wrong-quantity', { path: 'frame.unit', expected: "'K'", received: unit });
-    }
-    checkView(array, 'frame.array');
-    return array;
-  }
-  checkView(frame, 'frame');
-  return frame;
-}
-
-/** A frame of which no finite pixel can be kelvin is a slip of unit, not a cold scene: nothing is written then. */
-function refuseOtherUnits(input: View, path: string): void {
-  let lowest = Number.POSITIVE_INFINITY;
-  let highest = Number.NEGATIVE_INFINITY;
-  const step = input.stride.at(-1) ?? 0;
-  let plausible = false;
-  forEachRow(input.shape, [input], ([start], length) => {
-    for (let column = 0; column < length && !plausible; column++) {
-      const value = input.data[start! + column * step]!;
-      if (!Number.isFinite(value)) continue;
-      plausible = value >= lowestTemperature && value <= highestTemperature;
-      if (value < lowest) lowest = value;
-      if (value > highest) highest = value;
-    }
-  });
-  if (plausible || lowest > highest) return;
-  throw new MeasurementError('out-of-range', {
-    path,
-    expected: `temperatures in kelvin, ${lowestTemperature}…${highestTemperature} K`,
-    received: `values of ${lowest}…${highest}`,
-    hint:
-      highest < lowestTemperature
-        ? 'They look like degrees Celsius: add 273.15 first, or read the file with { unit: "degC" }.'
-        : 'They look like counts or scaled numbers: apply scale and offset first.',
-  });
-}
-
-function outputOf(
-  out: unknown,
-  shape: readonly number[],
-): { readonly temperature: View<Float32Array>; readonly flags: View<Uint8Array> } {
-  const newFlags = (): View<Uint8Array> => emptyView(new Uint8Array(sizeOf(shape)), shape);
-  if (out === undefined) return { temperature: emptyView(new Float32Array(sizeOf(shape)), shape), flags: newFlags() };
-  const given = isView(out) ? { temperature: out } : (plainObject(out, 'out', Object.keys(Object(out))) as Partial<SurfaceFrame>);
-  const flags = 'flags' in given ? given.flags : undefined;
-  checkOutput(given.temperature, Float32Array, shape, 'out.temperature');
-  if (flags !== undefined) checkOutput(flags, Uint8Array, shape, 'out.flags');
-  return { temperature: given.temperature as View<Float32Array>, flags: flags ?? newFlags() };
-}
-
-function checkOutput(
-  out: unknown,
-  type: typeof Float32Array | typeof Uint8Array,
-  shape: readonly number[],
-  path: string,
-): void {
-  checkView(out, path);
-  if (!(out.data instanceof type)) {
-    throw new MeasurementError('wrong-type', { path, expected: `a view of a ${type.name}`, received: out.data });
-  }
-  if (!sameShape(out.shape, shape)) {
-    throw new MeasurementError('wrong-shape', { path, expected: `the shape of the frame, [${shape.join(', ')}]`, received: out.shape });
-  }
-}
-
-/** The input, copied where it shares memory with the output but not its layout: in place must mean cell by cell. */
-function detached(input: View, output: View): View {
-  const [a, b] = [input.data, output.data];
-  if (Array.isArray(a) || Array.isArray(b) || a.buffer !== b.buffer) return input;
-  const alike = a === b && input.offset === output.offset && sameShape(input.stride, output.stride);
-  if (alike) return input;
-  return { ...input, data: a.slice() };
-}
-
-function emptyView<Data extends NumericArray>(data: Data, shape: readonly number[]): View<Data> {
-  return { data, shape: [...shape], stride: rowMajorStride(shape), offset: 0 };
 }

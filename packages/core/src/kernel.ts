@@ -2,8 +2,9 @@
  * Temperature ↔ radiance on bare numbers, for each kind of band. The inverses are bracketed: they return NaN only
  * for a radiance that no temperature of the range gives.
  */
-import type { Calibration } from './band.js';
+
 import { firstRadiationConstantRadiance as c1L, secondRadiationConstant as c2 } from './constants.js';
+import type { Calibration } from './descriptor.js';
 import { planck, planckSlope } from './planck.js';
 import type { Rule } from './quadrature.js';
 import type { RadianceKernel } from './table.js';
@@ -58,7 +59,12 @@ export function quadratureKernel({ node, weight }: Rule, from: number, to: numbe
 }
 
 /** A single wavelength with a weight: Planck's law in closed form. */
-export function monochromaticKernel(wavelength: number, weight: number, from: number, to: number): RadianceKernel {
+export function monochromaticKernel(
+  wavelength: number,
+  weight: number,
+  from: number,
+  to: number,
+): RadianceKernel {
   const scale = (weight * c1L) / wavelength ** 5;
   return closedForm(scale, wavelength, 0, from, to);
 }

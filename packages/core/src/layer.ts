@@ -57,7 +57,9 @@ export interface WindowInput {
 }
 
 /** What {@link layer} takes: a window's inputs, or a transmittance and a path radiance. */
-export type LayerInput = WindowInput | { readonly transmittance: Scalar | Curve; readonly pathRadiance: Scalar };
+export type LayerInput =
+  | WindowInput
+  | { readonly transmittance: Scalar | Curve; readonly pathRadiance: Scalar };
 
 /**
  * A stretch of air with a known transmittance: τ·L + (1 − τ)·L(T_air).
@@ -77,7 +79,12 @@ export function air(input: AirInput): Layer {
  *   `missing-input` when the window emits and has no temperature, or mirrors and has no mirrored temperature.
  */
 export function infraredWindow(input: WindowInput): Layer {
-  plainObject(input, 'infraredWindow', ['transmittance', 'reflectance', 'temperature', 'mirroredTemperature']);
+  plainObject(input, 'infraredWindow', [
+    'transmittance',
+    'reflectance',
+    'temperature',
+    'mirroredTemperature',
+  ]);
   return makeLayer('window', input);
 }
 
@@ -116,12 +123,19 @@ export function isInterval(value: unknown): value is Interval {
 }
 
 /** The middle and the half-width of an interval of ratios. */
-export function interval(value: Interval, path: string): { readonly middle: number; readonly halfWidth: number } {
+export function interval(
+  value: Interval,
+  path: string,
+): { readonly middle: number; readonly halfWidth: number } {
   plainObject(value, path, ['low', 'high']);
   const low = ratio(value.low, `${path}.low`);
   const high = ratio(value.high, `${path}.high`);
   if (high >= low) return { middle: (low + high) / 2, halfWidth: (high - low) / 2 };
-  throw new MeasurementError('out-of-range', { path: `${path}.high`, expected: `a number ≥ low = ${low}`, received: high });
+  throw new MeasurementError('out-of-range', {
+    path: `${path}.high`,
+    expected: `a number ≥ low = ${low}`,
+    received: high,
+  });
 }
 
 /** A ratio, a map of it, or a curve of it. */
@@ -146,17 +160,30 @@ function makeLayer(kind: Layer['kind'], input: WindowInput): Layer {
   };
   const transmittance = middleOf('transmittance', 'above 0');
   const reflectance = input.reflectance === undefined ? 0 : middleOf('reflectance', 'from 0');
-  if (typeof transmittance === 'number' && typeof reflectance === 'number' && transmittance + reflectance > 1 + 1e-12) {
+  if (
+    typeof transmittance === 'number' &&
+    typeof reflectance === 'number' &&
+    transmittance + reflectance > 1 + 1e-12
+  ) {
     throw new MeasurementError('out-of-range', {
       path: `${name}.reflectance`,
       expected: 'transmittance + reflectance ≤ 1',
       received: `${transmittance} + ${reflectance}`,
     });
   }
-  const emits = !(typeof transmittance === 'number' && typeof reflectance === 'number' && transmittance + reflectance >= 1 - 1e-12);
+  const emits = !(
+    typeof transmittance === 'number' &&
+    typeof reflectance === 'number' &&
+    transmittance + reflectance >= 1 - 1e-12
+  );
   const mirrors = reflectance !== 0;
   const temperatures = {
-    temperature: optionalTemperature(input.temperature, `${name}.temperature`, emits, 'the layer emits (1 − τ − ρ > 0)'),
+    temperature: optionalTemperature(
+      input.temperature,
+      `${name}.temperature`,
+      emits,
+      'the layer emits (1 − τ − ρ > 0)',
+    ),
     mirroredTemperature: optionalTemperature(
       input.mirroredTemperature,
       `${name}.mirroredTemperature`,
@@ -167,7 +194,12 @@ function makeLayer(kind: Layer['kind'], input: WindowInput): Layer {
   return freeze(kind, transmittance, reflectance, { ...temperatures, halfWidths });
 }
 
-function optionalTemperature(value: unknown, path: string, required: boolean, because: string): TemperatureScalar | undefined {
+function optionalTemperature(
+  value: unknown,
+  path: string,
+  required: boolean,
+  because: string,
+): TemperatureScalar | undefined {
   if (value !== undefined) return scalar<TemperatureScalar>(value, path, temperature);
   if (!required) return undefined;
   throw new MeasurementError('missing-input', {
@@ -193,4 +225,3 @@ function freeze(
     transmittanceBehind: () => transmittance,
   });
 }
-

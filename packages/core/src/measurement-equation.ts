@@ -69,7 +69,13 @@ const sumTolerance = 1e-7;
 export function measurementEquation(conditions: Conditions): MeasurementEquation {
   const { band, emissivity, surface, path = [] } = conditions;
   const inputs: EquationInput[] = [];
-  const add = (name: string, kind: InputKind, value: Scalar | Curve | undefined, of: Band = band, at?: number): number => {
+  const add = (
+    name: string,
+    kind: InputKind,
+    value: Scalar | Curve | undefined,
+    of: Band = band,
+    at?: number,
+  ): number => {
     if (value === undefined) return ZERO;
     const slot = inputs.length + 2;
     inputs.push({ name, kind, value, band: of, slot, ...(at === undefined ? {} : { layer: at }) });
@@ -82,7 +88,8 @@ export function measurementEquation(conditions: Conditions): MeasurementEquation
     const layer = path[k]!;
     const name = `path[${k}]`;
     const transmittance = layer.transmittanceBehind(path.slice(k + 1));
-    if (layer.pathRadiance !== undefined && behind !== band) throw radianceBehindCurve(`${name}.pathRadiance`);
+    if (layer.pathRadiance !== undefined && behind !== band)
+      throw radianceBehindCurve(`${name}.pathRadiance`);
     if (isCurve(transmittance) || isCurve(layer.reflectance)) {
       const { through, emitted, mirrored } = spectralLayer(layer, transmittance, behind, name);
       add(`${name}.transmittance`, 'curve', transmittance, behind, k);
@@ -109,25 +116,48 @@ export function measurementEquation(conditions: Conditions): MeasurementEquation
       emitted: explicit
         ? add(`${name}.pathRadiance`, 'radiance', layer.pathRadiance)
         : add(`${name}.temperature`, 'temperature', layer.temperature, behind),
-      mirrored: mirrors ? add(`${name}.mirroredTemperature`, 'temperature', layer.mirroredTemperature, behind) : ZERO,
+      mirrored: mirrors
+        ? add(`${name}.mirroredTemperature`, 'temperature', layer.mirroredTemperature, behind)
+        : ZERO,
     });
   }
 
-  if (conditions.reflectedRadiance !== undefined && behind !== band) throw radianceBehindCurve('reflectedRadiance');
+  if (conditions.reflectedRadiance !== undefined && behind !== band)
+    throw radianceBehindCurve('reflectedRadiance');
   const curve = isCurve(emissivity) ? spectralFunction(emissivity, 'emissivity') : undefined;
-  const reflectedBand = curve ? weightedInside(behind, mapped(curve, (value) => 1 - value)) : behind;
+  const reflectedBand = curve
+    ? weightedInside(
+        behind,
+        mapped(curve, (value) => 1 - value),
+      )
+    : behind;
+  const emissivityInput = curve
+    ? add('emissivity', 'curve', emissivity, behind)
+    : add('emissivity', 'positive ratio', emissivity);
   const slots = {
     gray: curve === undefined,
-    emissivity: curve ? (add('emissivity', 'curve', emissivity, behind), ONE) : add('emissivity', 'positive ratio', emissivity),
+    // A curve is in the weight of the target's band already: what is left of it is 1.
+    emissivity: curve ? ONE : emissivityInput,
     reflected:
       conditions.reflectedRadiance === undefined
-        ? add('reflectedApparentTemperature', 'temperature', conditions.reflectedApparentTemperature, reflectedBand)
+        ? add(
+            'reflectedApparentTemperature',
+            'temperature',
+            conditions.reflectedApparentTemperature,
+            reflectedBand,
+          )
         : add('reflectedRadiance', 'radiance', conditions.reflectedRadiance),
     transmittance: add('surface.transmittance', 'ratio', surface?.transmittance),
-    background: add('surface.backgroundApparentTemperature', 'temperature', surface?.backgroundApparentTemperature, behind),
+    background: add(
+      'surface.backgroundApparentTemperature',
+      'temperature',
+      surface?.backgroundApparentTemperature,
+      behind,
+    ),
   };
   // The path was walked from the instrument; inputs are listed from the target.
-  const rank = ({ name }: EquationInput): number => (name.startsWith('path[') ? Number.parseInt(name.slice(5), 10) : -1);
+  const rank = ({ name }: EquationInput): number =>
+    name.startsWith('path[') ? Number.parseInt(name.slice(5), 10) : -1;
   inputs.sort((a, b) => rank(a) - rank(b));
   return {
     band,
@@ -161,7 +191,7 @@ export function compose({ surface, steps }: MeasurementEquation, x: Float64Array
       offset = transmittance * offset + x[step.emitted]! + x[step.mirrored]!;
     }
   }
-  out.gain = offset === offset ? gain : Number.NaN;
+  out.gain = Number.isNaN(offset) ? Number.NaN : gain;
   out.offset = offset;
 }
 
@@ -176,7 +206,11 @@ export interface RadianceTerm {
 }
 
 /** The parts of the radiance at the instrument, target first. Their sum is the whole. */
-export function radianceTerms(equation: MeasurementEquation, x: Float64Array, targetRadiance: number): RadianceTerm[] {
+export function radianceTerms(
+  equation: MeasurementEquation,
+  x: Float64Array,
+  targetRadiance: number,
+): RadianceTerm[] {
   const { surface, steps } = equation;
   const after = transmittancesAfter(equation, x);
   const emissivity = x[surface.emissivity]!;
@@ -186,7 +220,8 @@ export function radianceTerms(equation: MeasurementEquation, x: Float64Array, ta
     ['target', after[0]! * emissivity * targetRadiance],
     ['reflected surroundings', after[0]! * reflectance * x[surface.reflected]!],
   ];
-  if (transmittance > 0) parts.push(['background through the target', after[0]! * transmittance * x[surface.background]!]);
+  if (transmittance > 0)
+    parts.push(['background through the target', after[0]! * transmittance * x[surface.background]!]);
   steps.forEach((step, k) => {
     const emittance = step.gray ? 1 - x[step.transmittance]! - x[step.reflectance]! : 1;
     const mirror = step.gray ? x[step.reflectance]! : 1;
@@ -200,7 +235,11 @@ export function radianceTerms(equation: MeasurementEquation, x: Float64Array, ta
  * ∂L_instrument/∂x for every slot, at a radiance of the target in its own band.   [METHOD.md eq. 14]
  * Slots of curves stay 0: their derivatives need other bands, see `curveDerivative` in sensitivity.ts.
  */
-export function partialDerivatives(equation: MeasurementEquation, x: Float64Array, targetRadiance: number): Float64Array {
+export function partialDerivatives(
+  equation: MeasurementEquation,
+  x: Float64Array,
+  targetRadiance: number,
+): Float64Array {
   const { surface, steps } = equation;
   const after = transmittancesAfter(equation, x);
   const partial = new Float64Array(equation.slots);
@@ -214,7 +253,8 @@ export function partialDerivatives(equation: MeasurementEquation, x: Float64Arra
     partial[surface.transmittance]! += after[0]! * (background - reflected);
     partial[surface.reflected]! += after[0]! * (1 - emissivity - transmittance);
     partial[surface.background]! += after[0]! * transmittance;
-    radiance = emissivity * targetRadiance + (1 - emissivity - transmittance) * reflected + transmittance * background;
+    radiance =
+      emissivity * targetRadiance + (1 - emissivity - transmittance) * reflected + transmittance * background;
   } else {
     partial[surface.reflected]! += after[0]!;
   }
@@ -228,7 +268,9 @@ export function partialDerivatives(equation: MeasurementEquation, x: Float64Arra
     partial[step.reflectance]! += beyond * (mirrored - emitted);
     partial[step.emitted]! += beyond * (step.gray ? 1 - passed - mirror : 1);
     partial[step.mirrored]! += beyond * (step.gray ? mirror : 1);
-    radiance = passed * radiance + (step.gray ? (1 - passed - mirror) * emitted + mirror * mirrored : emitted + mirrored);
+    radiance =
+      passed * radiance +
+      (step.gray ? (1 - passed - mirror) * emitted + mirror * mirrored : emitted + mirrored);
   });
   return partial;
 }
@@ -252,7 +294,10 @@ function spectralLayer(
   const { breakpoints } = product(passed, mirrored);
   const rest = (wavelength: number): number => 1 - passed.at(wavelength) - mirrored.at(wavelength);
   // A step has two values at its breakpoint, so the sum is also looked at in the middle of each piece.
-  const worst = breakpoints.reduce((least, at, i) => Math.min(least, rest(at), rest((at + breakpoints[i - 1 < 0 ? 0 : i - 1]!) / 2)), 1);
+  const worst = breakpoints.reduce(
+    (least, at, i) => Math.min(least, rest(at), rest((at + breakpoints[Math.max(i - 1, 0)]!) / 2)),
+    1,
+  );
   if (worst < -sumTolerance) {
     throw new MeasurementError('out-of-range', {
       path: `${name}.reflectance`,
@@ -291,4 +336,3 @@ function radianceBehindCurve(path: string): MeasurementError {
     hint: 'A band radiance does not say how it is spread over wavelength.',
   });
 }
-

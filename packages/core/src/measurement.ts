@@ -6,28 +6,31 @@
  * has no answer, a frame writes NaN and says why.
  */
 import type { Band } from './band.js';
+import { temperature } from './check.js';
 import { type Conditions, checkedConditions } from './conditions.js';
 import { type FrameInput, type FrameOutput, type SurfaceFrame, surfaceFrameOf } from './frame.js';
 import type { RadianceTerm } from './measurement-equation.js';
 import {
   checkedReading,
   type Engine,
+  type EngineAt,
   engineAt,
   engineOf,
-  type EngineAt,
   needsPixel,
   readingOf,
   sensitivitiesAt,
   surfaceOf,
   termsAt,
 } from './model.js';
-import { temperature } from './check.js';
 import type { Pixel } from './scalar.js';
 import type { Sensitivities } from './sensitivity.js';
 import type { AnyKelvin, Kelvin } from './units.js';
 
 /** A temperature a correction takes: a plain `Kelvin`, apparent by contract, or one that says so. */
-export type ApparentKelvin = Kelvin<'apparent temperature' | undefined> | Kelvin<'apparent temperature'> | Kelvin;
+export type ApparentKelvin =
+  | Kelvin<'apparent temperature' | undefined>
+  | Kelvin<'apparent temperature'>
+  | Kelvin;
 
 /** What a model with numbers, or a model at one pixel, answers. */
 export interface ModelAtPoint {
@@ -117,7 +120,10 @@ export function measurementModel(conditions: Conditions): MeasurementModel {
  * @returns [K], −60…3000 °C, within 0.1 mK of quadrature from −40 to 2000 °C
  * @throws {MeasurementError} as {@link measurementModel} and `MeasurementModel.surfaceTemperature`.
  */
-export function surfaceTemperature(apparent: ApparentKelvin, conditions: Conditions): Kelvin<'surface temperature'> {
+export function surfaceTemperature(
+  apparent: ApparentKelvin,
+  conditions: Conditions,
+): Kelvin<'surface temperature'> {
   return measurementModel(conditions).surfaceTemperature(apparent);
 }
 
@@ -127,13 +133,17 @@ export function surfaceTemperature(apparent: ApparentKelvin, conditions: Conditi
  * @param surface - True temperature. [K]
  * @throws {MeasurementError} as {@link measurementModel}.
  */
-export function apparentTemperature(surface: AnyKelvin, conditions: Conditions): Kelvin<'apparent temperature'> {
+export function apparentTemperature(
+  surface: AnyKelvin,
+  conditions: Conditions,
+): Kelvin<'apparent temperature'> {
   return measurementModel(conditions).apparentTemperature(surface);
 }
 
 function modelOf(engine: Engine, fixed: Pixel | undefined): MeasurementModel {
   const uniform = !needsPixel(engine) || fixed !== undefined ? engineAt(engine, fixed) : undefined;
-  const at = (pixel: Pixel | undefined): EngineAt => (pixel === undefined && uniform ? uniform : engineAt(engine, pixel));
+  const at = (pixel: Pixel | undefined): EngineAt =>
+    pixel === undefined && uniform ? uniform : engineAt(engine, pixel);
   return Object.freeze({
     reads: 'apparent temperature' as const,
     conditions: engine.conditions,

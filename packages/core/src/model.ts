@@ -2,11 +2,17 @@
  * A model: conditions compiled once, answering readings and frames. Shared by the measurement of an apparent
  * temperature and by the recorrection of a recorded one, which differ only in how the reading becomes radiance.
  */
-import type { Conditions } from './conditions.js';
+
 import { temperature } from './check.js';
+import type { Conditions } from './conditions.js';
 import { MeasurementError } from './errors.js';
 import { type EquationAt, equationAt, hasMaps } from './evaluation.js';
-import { measurementEquation, type MeasurementEquation, type RadianceTerm, radianceTerms } from './measurement-equation.js';
+import {
+  type MeasurementEquation,
+  measurementEquation,
+  type RadianceTerm,
+  radianceTerms,
+} from './measurement-equation.js';
 import type { Quantity } from './quantity.js';
 import type { Pixel } from './scalar.js';
 import { radianceSensitivities, type Sensitivities } from './sensitivity.js';
@@ -72,7 +78,8 @@ export function surfaceOf(at: EngineAt, reading: AnyKelvin): Kelvin<'surface tem
   const seen = radianceOfReading(at, reading);
   const radiance = (seen - actual.offset) / actual.gain;
   const solution = radiance > 0 ? engine.equation.targetBand.exact.temperature(radiance) : Number.NaN;
-  if (solution >= surfaceRange.from && solution <= surfaceRange.to) return solution as Kelvin<'surface temperature'>;
+  if (solution >= surfaceRange.from && solution <= surfaceRange.to)
+    return solution as Kelvin<'surface temperature'>;
   throw radiance > 0 ? outsideRange(at, radiance, reading) : noSurface(at, reading);
 }
 
@@ -91,6 +98,31 @@ export function readingOf(at: EngineAt, surface: AnyKelvin): number {
     received: `${radiance} ${targetBand.radianceUnit} left for the target`,
     hint: 'The recorded settings ascribe more radiance to surroundings and path than there is.',
   });
+}
+
+/**
+ * Readings from which on, and up to which, a value is saturated: the ends of the measuring range. A range of the
+ * actual conditions is of apparent temperature and is carried over to recorded ones.
+ */
+export function saturationOf(engine: Engine): { readonly from: number; readonly to: number } | undefined {
+  const { recorded, conditions } = engine;
+  const resolution = (recorded?.conditions as { resolution?: number } | undefined)?.resolution ?? 0;
+  // 1 mK: a float32 of the range's end may lie just inside it.
+  const inside = 1e-3 + resolution / 2;
+  const own = recorded
+    ? recorded.conditions.instrument?.measuringRange
+    : conditions.instrument?.measuringRange;
+  if (own) return { from: own.from + inside, to: own.to - inside };
+  const apparent = conditions.instrument?.measuringRange;
+  if (!apparent || !recorded || hasMaps(recorded.equation)) return undefined;
+  const { gain, offset, equation } = equationAt(recorded.equation, undefined);
+  const stored = (end: number): number =>
+    equation.targetBand.exact.temperature((engine.equation.band.exact.radiance(end) - offset) / gain);
+  const [from, to] = [stored(apparent.from), stored(apparent.to)];
+  return {
+    from: Number.isNaN(from) ? Number.NEGATIVE_INFINITY : from + inside,
+    to: Number.isNaN(to) ? Number.POSITIVE_INFINITY : to - inside,
+  };
 }
 
 /** Sensitivity of the surface temperature to the reading and to every input. */
@@ -124,7 +156,8 @@ export function termsAt(at: EngineAt, surface: number): readonly RadianceTerm[] 
  */
 export function checkedReading(value: unknown, reads: ReadingQuantity): AnyKelvin {
   const path = reads === 'apparent temperature' ? 'apparent' : 'recorded';
-  const quantity = typeof value === 'object' && value !== null ? (value as { quantity?: unknown }).quantity : undefined;
+  const quantity =
+    typeof value === 'object' && value !== null ? (value as { quantity?: unknown }).quantity : undefined;
   if (quantity === undefined) return temperature(value, path);
   refuseQuantity(quantity, reads, path);
   return temperature((value as { temperature?: unknown }).temperature, path);
@@ -148,13 +181,20 @@ export function refuseQuantity(quantity: unknown, reads: Quantity, path: string)
     'apparent temperature': 'Use measurementModel(conditions): no settings were applied to it.',
   };
   const hint = typeof quantity === 'string' ? hints[quantity] : undefined;
-  throw new MeasurementError('wrong-quantity', { path, expected: reads, received: quantity, ...(hint ? { hint } : {}) });
+  throw new MeasurementError('wrong-quantity', {
+    path,
+    expected: reads,
+    received: quantity,
+    ...(hint ? { hint } : {}),
+  });
 }
 
 function noSurface(at: EngineAt, reading: number): MeasurementError {
   const { actual, engine } = at;
   const alone = engine.equation.band.exact.temperature(actual.offset);
-  const showing = Number.isNaN(alone) ? '' : ` Surroundings and path alone would already show ${alone.toFixed(2)} K.`;
+  const showing = Number.isNaN(alone)
+    ? ''
+    : ` Surroundings and path alone would already show ${alone.toFixed(2)} K.`;
   return new MeasurementError('no-solution', {
     path: engine.recorded ? 'recorded' : 'apparent',
     expected: 'a reading above what surroundings and path send by themselves',

@@ -26,7 +26,8 @@ export function gaussLegendre(n: number): Rule {
     for (let step = 0; step < 50; step++) {
       let previous = 1;
       let current = x;
-      for (let k = 2; k <= n; k++) [previous, current] = [current, ((2 * k - 1) * x * current - (k - 1) * previous) / k];
+      for (let k = 2; k <= n; k++)
+        [previous, current] = [current, ((2 * k - 1) * x * current - (k - 1) * previous) / k];
       slope = (n * (x * current - previous)) / (x * x - 1);
       const change = current / slope;
       x -= change;
@@ -46,7 +47,10 @@ export function gaussLegendre(n: number): Rule {
  * @param breakpoints - Wavelengths, ascending. [µm]
  * @param weighting - Dimensionless weight of a wavelength; folded into the rule's weights.
  */
-export function wavelengthRule(breakpoints: readonly number[], weighting: (wavelength: number) => number): Rule {
+export function wavelengthRule(
+  breakpoints: readonly number[],
+  weighting: (wavelength: number) => number,
+): Rule {
   const node: number[] = [];
   const weight: number[] = [];
   for (let i = 1; i < breakpoints.length; i++) {

@@ -4,7 +4,12 @@
  */
 import type { Band } from './band.js';
 import { temperature } from './check.js';
-import { type Conditions, checkedConditions, checkedRecorded, type RecordedConditions } from './conditions.js';
+import {
+  type Conditions,
+  checkedConditions,
+  checkedRecorded,
+  type RecordedConditions,
+} from './conditions.js';
 import { type FrameInput, type FrameOutput, type SurfaceFrame, surfaceFrameOf } from './frame.js';
 import {
   checkedReading,
@@ -71,9 +76,14 @@ export function recorrection(recorded: RecordedConditions, actual: Conditions): 
   return recorrectionOf(engineOf(conditions, settings), settings, undefined);
 }
 
-function recorrectionOf(engine: Engine, settings: Recorrection['recorded'], fixed: Pixel | undefined): Recorrection {
+function recorrectionOf(
+  engine: Engine,
+  settings: Recorrection['recorded'],
+  fixed: Pixel | undefined,
+): Recorrection {
   const uniform = !needsPixel(engine) || fixed !== undefined ? engineAt(engine, fixed) : undefined;
-  const at = (pixel: Pixel | undefined): EngineAt => (pixel === undefined && uniform ? uniform : engineAt(engine, pixel));
+  const at = (pixel: Pixel | undefined): EngineAt =>
+    pixel === undefined && uniform ? uniform : engineAt(engine, pixel);
   const names = engine.equation.inputs.map((input) => input.name);
   const recordedNames = engine.recorded?.equation.inputs.map((input) => `recorded.${input.name}`) ?? [];
   return Object.freeze({

@@ -97,7 +97,11 @@ export function checkedRegion(region: unknown, path = 'region'): Region {
       const { mask } = plainObject(region, path, ['kind', 'mask']);
       checkView(mask, `${path}.mask`);
       if (mask.shape.length !== 2) {
-        throw new MeasurementError('wrong-shape', { path: `${path}.mask`, expected: '(row, column)', received: mask.shape });
+        throw new MeasurementError('wrong-shape', {
+          path: `${path}.mask`,
+          expected: '(row, column)',
+          received: mask.shape,
+        });
       }
     }
   }
@@ -113,7 +117,9 @@ function contains(region: Region, row: number, column: number): boolean {
     }
     case 'ellipse': {
       const { centre, semiAxes } = region;
-      return ((row - centre.row) / semiAxes.row) ** 2 + ((column - centre.column) / semiAxes.column) ** 2 <= 1;
+      return (
+        ((row - centre.row) / semiAxes.row) ** 2 + ((column - centre.column) / semiAxes.column) ** 2 <= 1
+      );
     }
     case 'polygon':
       return insidePolygon(region.points, row, column);
@@ -147,7 +153,12 @@ export function regionBounds(region: Region, [rows, columns]: readonly [number, 
   const extent = (): [top: number, bottom: number, left: number, right: number] => {
     switch (region.kind) {
       case 'rectangle':
-        return [region.row - 0.5, region.row - 0.5 + region.height, region.column - 0.5, region.column - 0.5 + region.width];
+        return [
+          region.row - 0.5,
+          region.row - 0.5 + region.height,
+          region.column - 0.5,
+          region.column - 0.5 + region.width,
+        ];
       case 'ellipse': {
         const { centre, semiAxes } = region;
         return [
@@ -160,7 +171,12 @@ export function regionBounds(region: Region, [rows, columns]: readonly [number, 
       case 'polygon': {
         let box: [number, number, number, number] = [Infinity, -Infinity, Infinity, -Infinity];
         for (const { row, column } of region.points) {
-          box = [Math.min(box[0], row), Math.max(box[1], row), Math.min(box[2], column), Math.max(box[3], column)];
+          box = [
+            Math.min(box[0], row),
+            Math.max(box[1], row),
+            Math.min(box[2], column),
+            Math.max(box[3], column),
+          ];
         }
         return box;
       }
@@ -207,7 +223,10 @@ export function forEachPixel(
  * @returns uint8 view (row, column).
  * @throws {MeasurementError} as {@link checkedRegion}; `wrong-shape`.
  */
-export function regionMask(region: Region, shape: readonly [rows: number, columns: number]): View<Uint8Array> {
+export function regionMask(
+  region: Region,
+  shape: readonly [rows: number, columns: number],
+): View<Uint8Array> {
   const mask = view(new Uint8Array(shape[0] * shape[1]), shape);
   forEachPixel(checkedRegion(region), shape, (row, column) => {
     mask.data[row * shape[1] + column] = 1;

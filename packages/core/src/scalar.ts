@@ -24,7 +24,11 @@ export interface Pixel {
 }
 
 /** Checks a number with `check`; a map is checked as a view only, its cells when they are read. */
-export function scalar<T extends Scalar>(value: unknown, path: string, check: (value: unknown, path: string) => number): T {
+export function scalar<T extends Scalar>(
+  value: unknown,
+  path: string,
+  check: (value: unknown, path: string) => number,
+): T {
   if (isView(value)) {
     checkView(value, path);
     if (value.shape.length >= 2) return value as unknown as T;

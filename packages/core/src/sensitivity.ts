@@ -46,11 +46,21 @@ export function radianceSensitivities(
  * Emissivity: the path's share of L(T) − L(T_refl). A layer: what arrives without it, less a blackbody at its
  * temperature (transmittance); what it mirrors, less that (reflectance).
  */
-function curveDerivative(input: EquationInput, conditions: Conditions, kelvin: number, pixel: Pixel | undefined): number {
+function curveDerivative(
+  input: EquationInput,
+  conditions: Conditions,
+  kelvin: number,
+  pixel: Pixel | undefined,
+): number {
   const path = conditions.path ?? [];
   const blackbodyBehind = (temperature: number, nearer: readonly Layer[]): number => {
     const { band } = conditions;
-    const black = { band, emissivity: 1, reflectedApparentTemperature: temperature, path: nearer } as Conditions;
+    const black = {
+      band,
+      emissivity: 1,
+      reflectedApparentTemperature: temperature,
+      path: nearer,
+    } as Conditions;
     return radianceOf(black, temperature, pixel);
   };
   if (input.layer === undefined) {
@@ -61,7 +71,8 @@ function curveDerivative(input: EquationInput, conditions: Conditions, kelvin: n
   const layer = path[k]!;
   const nearer = path.slice(k + 1);
   const darkOffset = blackOffset(conditions, nearer, pixel);
-  const emitted = layer.temperature === undefined ? darkOffset : blackbodyBehind(layer.temperature as number, nearer);
+  const emitted =
+    layer.temperature === undefined ? darkOffset : blackbodyBehind(layer.temperature as number, nearer);
   if (input.name.endsWith('.reflectance')) {
     return blackbodyBehind(layer.mirroredTemperature as number, nearer) - emitted;
   }
@@ -74,7 +85,9 @@ function curveDerivative(input: EquationInput, conditions: Conditions, kelvin: n
     pathRadiance: undefined,
     transmittanceBehind: () => 1,
   });
-  return radianceOf({ ...conditions, path: [...path.slice(0, k), clear, ...nearer] }, kelvin, pixel) - emitted;
+  return (
+    radianceOf({ ...conditions, path: [...path.slice(0, k), clear, ...nearer] }, kelvin, pixel) - emitted
+  );
 }
 
 /** Radiance at the instrument from a target of this temperature. */
@@ -85,6 +98,11 @@ function radianceOf(conditions: Conditions, kelvin: number, pixel: Pixel | undef
 
 /** What the layers alone send, with nothing behind them. */
 function blackOffset(conditions: Conditions, path: readonly Layer[], pixel: Pixel | undefined): number {
-  const dark = { band: conditions.band, emissivity: 1, reflectedApparentTemperature: 300, path } as unknown as Conditions;
+  const dark = {
+    band: conditions.band,
+    emissivity: 1,
+    reflectedApparentTemperature: 300,
+    path,
+  } as unknown as Conditions;
   return equationAt(measurementEquation(dark), pixel).offset;
 }

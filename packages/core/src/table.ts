@@ -56,7 +56,13 @@ export function tabulated(exact: RadianceKernel, from: number, to: number): Radi
       const cell = cellOf(temperature);
       const width = edgeAt[cell + 1]! - edgeAt[cell]!;
       const u = (temperature - edgeAt[cell]!) / width;
-      return hermite(u, radianceAt[cell]!, radianceAt[cell + 1]!, slopeAt[cell]! * width, slopeAt[cell + 1]! * width);
+      return hermite(
+        u,
+        radianceAt[cell]!,
+        radianceAt[cell + 1]!,
+        slopeAt[cell]! * width,
+        slopeAt[cell + 1]! * width,
+      );
     },
     slope(temperature) {
       const cell = cellOf(temperature);
@@ -83,7 +89,9 @@ export function tabulated(exact: RadianceKernel, from: number, to: number): Radi
 /** The cell of a temperature in 128…4095 K, by its leading bits. */
 function cellOf(temperature: number): number {
   const octave = 31 - Math.clz32(temperature);
-  return (octave - firstOctave) * cellsPerOctave + Math.floor((temperature / (1 << octave) - 1) * cellsPerOctave);
+  return (
+    (octave - firstOctave) * cellsPerOctave + Math.floor((temperature / (1 << octave) - 1) * cellsPerOctave)
+  );
 }
 
 /** Cubic through two values with two slopes, on the unit interval. */

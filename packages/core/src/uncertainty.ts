@@ -37,7 +37,12 @@ export interface Uncertainties {
 }
 
 /** Inputs of a layer that can be uncertain. */
-export type PathKey = 'transmittance' | 'reflectance' | 'temperature' | 'mirroredTemperature' | 'pathRadiance';
+export type PathKey =
+  | 'transmittance'
+  | 'reflectance'
+  | 'temperature'
+  | 'mirroredTemperature'
+  | 'pathRadiance';
 
 const uncertaintyKeys = [
   'apparent',
@@ -48,7 +53,13 @@ const uncertaintyKeys = [
   'path',
   'surface',
 ] as const satisfies readonly (keyof Uncertainties)[];
-const pathKeys = ['transmittance', 'reflectance', 'temperature', 'mirroredTemperature', 'pathRadiance'] as const;
+const pathKeys = [
+  'transmittance',
+  'reflectance',
+  'temperature',
+  'mirroredTemperature',
+  'pathRadiance',
+] as const;
 const surfaceKeys = ['transmittance', 'backgroundApparentTemperature'] as const;
 
 /** One line of a budget. */
@@ -93,7 +104,13 @@ const halfWidthDivisor: Readonly<Record<Distribution, number>> = {
  */
 export function standardUncertaintyOf(entry: unknown, path: string): number {
   if (typeof entry === 'number') return notNegative(entry, path);
-  const given = plainObject(entry, path, ['standard', 'halfWidth', 'distribution', 'expanded', 'coverageFactor']);
+  const given = plainObject(entry, path, [
+    'standard',
+    'halfWidth',
+    'distribution',
+    'expanded',
+    'coverageFactor',
+  ]);
   const stated = ['standard', 'halfWidth', 'expanded'].filter((key) => given[key] !== undefined);
   if (stated.length !== 1) {
     throw new MeasurementError(stated.length === 0 ? 'missing-input' : 'conflicting-inputs', {
@@ -104,11 +121,16 @@ export function standardUncertaintyOf(entry: unknown, path: string): number {
   }
   if (given.standard !== undefined) return notNegative(given.standard, `${path}.standard`);
   if (given.expanded !== undefined) {
-    return notNegative(given.expanded, `${path}.expanded`) / positive(given.coverageFactor, `${path}.coverageFactor`);
+    return (
+      notNegative(given.expanded, `${path}.expanded`) /
+      positive(given.coverageFactor, `${path}.coverageFactor`)
+    );
   }
   const words = ['rectangular', 'triangular', 'arcsine'] as const;
   const distribution =
-    given.distribution === undefined ? 'rectangular' : oneOf(given.distribution, `${path}.distribution`, words);
+    given.distribution === undefined
+      ? 'rectangular'
+      : oneOf(given.distribution, `${path}.distribution`, words);
   return notNegative(given.halfWidth, `${path}.halfWidth`) / halfWidthDivisor[distribution];
 }
 
@@ -119,7 +141,13 @@ export function flatUncertainties(uncertainties: unknown): Record<string, number
   const put = (name: string, entry: unknown): void => {
     if (entry !== undefined) flat[name] = standardUncertaintyOf(entry, `uncertainties.${name}`);
   };
-  for (const key of ['apparent', 'recorded', 'emissivity', 'reflectedApparentTemperature', 'reflectedRadiance']) {
+  for (const key of [
+    'apparent',
+    'recorded',
+    'emissivity',
+    'reflectedApparentTemperature',
+    'reflectedRadiance',
+  ]) {
     put(key, given[key]);
   }
   if (given.path !== undefined) {
@@ -147,7 +175,11 @@ export function flatUncertainties(uncertainties: unknown): Record<string, number
  *
  * @throws {MeasurementError} `unknown-key` for an uncertainty of an input the conditions do not have.
  */
-export function budgetAt(at: EngineAt, reading: AnyKelvin, uncertainties: Uncertainties | undefined): Budget | undefined {
+export function budgetAt(
+  at: EngineAt,
+  reading: AnyKelvin,
+  uncertainties: Uncertainties | undefined,
+): Budget | undefined {
   const given = uncertainties === undefined ? {} : flatUncertainties(uncertainties);
   const sensitivities = sensitivitiesAt(at, reading);
   for (const name of Object.keys(given)) {
@@ -166,14 +198,25 @@ export function budgetAt(at: EngineAt, reading: AnyKelvin, uncertainties: Uncert
     const standardUncertainty = own ?? implied[name]!.standardUncertainty;
     const sensitivity = sensitivities[name]!;
     const contribution = Math.abs(sensitivity) * standardUncertainty;
-    return { name, standardUncertainty, sensitivity, contribution, ...(own === undefined ? { origin: implied[name]!.origin } : {}) };
+    return {
+      name,
+      standardUncertainty,
+      sensitivity,
+      contribution,
+      ...(own === undefined ? { origin: implied[name]!.origin } : {}),
+    };
   });
   const variance = parts.reduce((sum, { contribution }) => sum + contribution ** 2, 0);
   const rows = parts
     .map((part) => ({ ...part, share: variance > 0 ? part.contribution ** 2 / variance : 0 }))
     .sort((a, b) => b.share - a.share);
   const standardUncertainty = Math.sqrt(variance);
-  return { rows, standardUncertainty, coverageFactor, expandedUncertainty: coverageFactor * standardUncertainty };
+  return {
+    rows,
+    standardUncertainty,
+    coverageFactor,
+    expandedUncertainty: coverageFactor * standardUncertainty,
+  };
 }
 
 /** Uncertainties the conditions bring with them: intervals, the instrument's accuracy, rounding of recorded values. */

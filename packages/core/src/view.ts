@@ -51,9 +51,14 @@ export function sizeOf(shape: readonly number[]): number {
  * @throws {MeasurementError} `wrong-shape` when the data is too short or an extent is not a whole number ≥ 0.
  */
 export function view<Data extends NumericArray>(data: Data, shape: readonly number[]): View<Data> {
-  const result = { data, shape: [...shape], stride: rowMajorStride(shape), offset: 0 };
+  const result = emptyView(data, shape);
   checkView(result, 'view');
   return result;
+}
+
+/** A row-major view of data that has exactly the elements of the shape. */
+export function emptyView<Data extends NumericArray>(data: Data, shape: readonly number[]): View<Data> {
+  return { data, shape: [...shape], stride: rowMajorStride(shape), offset: 0 };
 }
 
 /** Whether a value has the four fields of a view. */
@@ -125,7 +130,11 @@ export interface Operand {
 /** Lays a map over the last axes of a frame's shape. */
 export function broadcast(map: View, shape: readonly number[], path: string): Operand {
   const missing = shape.length - map.shape.length;
-  if (missing >= 0 && sameShape(map.shape, shape.slice(missing)) && (missing === 0 || map.shape.length === 2)) {
+  if (
+    missing >= 0 &&
+    sameShape(map.shape, shape.slice(missing)) &&
+    (missing === 0 || map.shape.length === 2)
+  ) {
     return { stride: [...new Array<number>(missing).fill(0), ...map.stride], offset: map.offset };
   }
   throw new MeasurementError('wrong-shape', {

@@ -1,0 +1,264 @@
+/**
+ * Records: conditions and results as JSON, checked by a schema, read back into what they describe.
+ *
+ * This subpath is the only one that needs zod. A document of a newer major version is refused.
+ */
+import * as z from 'zod';
+import { bandFromDescriptor } from './band.js';
+import { nearest } from './check.js';
+import {
+  type Conditions,
+  checkedConditions,
+  type Instrument,
+  type RecordedConditions,
+} from './conditions.js';
+import type {
+  AreaConditionsDocument,
+  ConditionsDocument,
+  InstrumentDocument,
+  LayerDocument,
+  TemperatureDocument,
+} from './document.js';
+import { compact } from './document.js';
+import { MeasurementError, within } from './errors.js';
+import { air, infraredWindow, type Layer, layer } from './layer.js';
+import { checkedRegion, type Region } from './regions.js';
+import {
+  type MeasurementResult,
+  measurementResult,
+  type ResultRecord,
+  recorrectionResult,
+} from './result.js';
+import { conditionsSchema, documentKeys, resultSchema } from './schema.js';
+import type { Uncertainties } from './uncertainty.js';
+import { type AnyKelvin, celsius, fahrenheit, kelvin } from './units.js';
+
+export type { ConditionsDocument, TemperatureDocument } from './document.js';
+export { conditionsSchema, resultSchema } from './schema.js';
+
+/** What a conditions document describes. */
+export interface DescribedConditions {
+  readonly conditions: Conditions;
+  readonly uncertainties: Uncertainties | undefined;
+  /** Parts of the frame with conditions of their own, those of the document where they say nothing. */
+  readonly areas: readonly {
+    readonly name: string;
+    readonly region: Region;
+    readonly conditions: Conditions;
+    readonly uncertainties: Uncertainties | undefined;
+  }[];
+  /** Settings an instrument applied itself: the frames then hold recorded temperature. */
+  readonly recorded: RecordedConditions | undefined;
+}
+
+/**
+ * Reads a conditions document: checks it against the schema and makes what it describes.
+ *
+ * @param document - A parsed JSON value.
+ * @throws {MeasurementError} `wrong-version` for a newer version; `unknown-key`, `missing-input`, `wrong-type`,
+ *   `out-of-range` with the path of what is at fault; whatever the described conditions throw.
+ */
+export function readConditionsDocument(document: unknown): DescribedConditions {
+  refuseNewer(document, 'graybody-conditions');
+  const checked = checkedBy(conditionsSchema, document) as unknown as ConditionsDocument;
+  const { areas = [], recorded, uncertainties } = checked;
+  const conditions = conditionsOf(checked);
+  return {
+    conditions,
+    uncertainties,
+    areas: areas.map((area, i) =>
+      within(`areas[${i}]`, () => ({
+        name: area.name,
+        region: checkedRegion(area.region),
+        conditions: within('conditions', () => conditionsOf(overridden(checked, area.conditions))),
+        uncertainties: areaUncertainties(uncertainties, area),
+      })),
+    ),
+    recorded:
+      recorded &&
+      (compact({
+        emissivity: recorded.emissivity,
+        reflectedApparentTemperature: kelvinOf(recorded.reflectedApparentTemperature),
+        path: recorded.path && layersOf(recorded.path, 'recorded.path'),
+        instrument: recorded.instrument && instrumentOf(recorded.instrument),
+        resolution: recorded.resolution,
+      }) as RecordedConditions),
+  };
+}
+
+/**
+ * Computes a result record anew, from its inputs alone.
+ *
+ * @returns The result; its temperature equals the record's within 1e-9 K with the same version.
+ * @throws {MeasurementError} as {@link readConditionsDocument}.
+ */
+export function recompute(record: unknown): MeasurementResult {
+  refuseNewer(record, 'graybody-result');
+  const checked = checkedBy(resultSchema, record) as unknown as ResultRecord;
+  const { reading, uncertainties } = checked;
+  const document = compact({ ...checked.conditions, recorded: checked.recorded });
+  const { conditions, recorded } = readConditionsDocument(document);
+  if (reading.quantity === 'apparent temperature') {
+    return measurementResult(kelvin(reading.kelvin), conditions, uncertainties);
+  }
+  if (recorded === undefined) {
+    throw new MeasurementError('missing-input', {
+      path: 'recorded',
+      expected: 'the recorded settings, because the reading is a recorded temperature',
+    });
+  }
+  return recorrectionResult(kelvin(reading.kelvin), recorded, conditions, uncertainties);
+}
+
+/** JSON Schema (draft 2020-12) of a conditions document. */
+export function conditionsJsonSchema(): Record<string, unknown> {
+  return z.toJSONSchema(conditionsSchema) as Record<string, unknown>;
+}
+
+/** JSON Schema (draft 2020-12) of a result record. */
+export function resultJsonSchema(): Record<string, unknown> {
+  return z.toJSONSchema(resultSchema) as Record<string, unknown>;
+}
+
+/** An area says what differs; a reflected radiance takes the place of a temperature, and the other way round. */
+function overridden(document: ConditionsDocument, area: AreaConditionsDocument): ConditionsDocument {
+  const base: Record<string, unknown> = { ...document };
+  if (area.reflectedRadiance !== undefined) delete base.reflectedApparentTemperature;
+  if (area.reflectedApparentTemperature !== undefined) delete base.reflectedRadiance;
+  return { ...base, ...area } as ConditionsDocument;
+}
+
+/** An area has the uncertainties of the document but for what it states; those of another path do not fit its own. */
+function areaUncertainties(
+  whole: Uncertainties | undefined,
+  area: NonNullable<ConditionsDocument['areas']>[number],
+): Uncertainties | undefined {
+  if (whole === undefined) return area.uncertainties;
+  const { path, ...rest } = whole;
+  const kept = area.conditions.path === undefined && path !== undefined ? { path } : {};
+  return { ...rest, ...kept, ...area.uncertainties };
+}
+
+function conditionsOf(document: ConditionsDocument): Conditions {
+  const { surface, reflectedApparentTemperature: reflected } = document;
+  return checkedConditions(
+    compact({
+      band: within('band', () => bandFromDescriptor(document.band)),
+      emissivity: document.emissivity,
+      reflectedApparentTemperature: reflected && kelvinOf(reflected),
+      reflectedRadiance: document.reflectedRadiance,
+      path: document.path && layersOf(document.path, 'path'),
+      surface: surface && {
+        transmittance: surface.transmittance,
+        backgroundApparentTemperature: kelvinOf(surface.backgroundApparentTemperature),
+      },
+      viewAngle: document.viewAngle,
+      reflectedMeasuredAt: document.reflectedMeasuredAt,
+      instrument: document.instrument && instrumentOf(document.instrument),
+      origins: document.origins,
+    }),
+  );
+}
+
+function layersOf(path: readonly LayerDocument[], name: string): Layer[] {
+  return path.map((document, k) =>
+    within(`${name}[${k}]`, () => {
+      const { kind, temperature, mirroredTemperature, ...rest } = document;
+      const input = compact({
+        ...rest,
+        temperature: temperature && kelvinOf(temperature),
+        mirroredTemperature: mirroredTemperature && kelvinOf(mirroredTemperature),
+      });
+      if (kind === 'air') return air(input as Parameters<typeof air>[0]);
+      if (kind === 'window') return infraredWindow(input as Parameters<typeof infraredWindow>[0]);
+      return layer(input as Parameters<typeof layer>[0]);
+    }),
+  );
+}
+
+function instrumentOf(document: InstrumentDocument): Instrument {
+  const { measuringRange: range, netd, ...rest } = document;
+  return compact({
+    ...rest,
+    measuringRange: range && { from: kelvinOf(range.from), to: kelvinOf(range.to) },
+    netd: netd && { value: netd.value, sceneTemperature: kelvinOf(netd.sceneTemperature) },
+  }) as Instrument;
+}
+
+function kelvinOf(document: TemperatureDocument): AnyKelvin {
+  if ('celsius' in document) return celsius(document.celsius);
+  return 'fahrenheit' in document ? fahrenheit(document.fahrenheit) : kelvin(document.kelvin);
+}
+
+function refuseNewer(document: unknown, format: string): void {
+  const { format: given, version } = Object(document) as { format?: unknown; version?: unknown };
+  if (given === format && typeof version === 'number' && version > 1) {
+    throw new MeasurementError('wrong-version', {
+      path: 'version',
+      expected: `${format} of version 1`,
+      received: version,
+      hint: 'It was written by a newer release: update @graybody/core.',
+    });
+  }
+}
+
+/** Checks by a schema; the first issue becomes an error with our codes. */
+function checkedBy(schema: z.ZodType, document: unknown): unknown {
+  const outcome = schema.safeParse(document);
+  if (outcome.success) return outcome.data;
+  throw errorOf(deepest(outcome.error.issues), document);
+}
+
+/** The issue to tell: the deepest, an unknown key before what is missing in its place. */
+function deepest(issues: readonly z.core.$ZodIssue[]): z.core.$ZodIssue {
+  const leaves = issues.flatMap(leavesOf);
+  const rank = (issue: z.core.$ZodIssue): number =>
+    issue.code === 'unrecognized_keys' ? issue.path.length * 2 + 3 : issue.path.length * 2;
+  return leaves.reduce((best, issue) => (rank(issue) > rank(best) ? issue : best));
+}
+
+/** Of a union, the issues of the branch that was meant: the one of the kind given. Without one, the union's own. */
+function leavesOf(issue: z.core.$ZodIssue): z.core.$ZodIssue[] {
+  if (issue.code !== 'invalid_union') return [issue];
+  const isOfKind = (branch: readonly z.core.$ZodIssue[]): boolean =>
+    !branch.some(({ code, path }) =>
+      path.length === 0
+        ? code === 'invalid_type'
+        : code === 'invalid_value' && (path.at(-1) === 'kind' || path.at(-1) === 'form'),
+    );
+  const meant = issue.errors.filter(isOfKind);
+  const fewest = Math.min(...meant.map((branch) => branch.length));
+  const branch = meant.find(({ length }) => length === fewest);
+  if (branch === undefined) return [issue];
+  return branch.map((inner) => ({ ...inner, path: [...issue.path, ...inner.path] })).flatMap(leavesOf);
+}
+
+function errorOf(issue: z.core.$ZodIssue, document: unknown): MeasurementError {
+  const path = issue.path.reduce<string>(
+    (text, key) =>
+      typeof key === 'number' ? `${text}[${key}]` : text === '' ? String(key) : `${text}.${String(key)}`,
+    '',
+  );
+  const received = issue.path.reduce<unknown>(
+    (value, key) => (Object(value) as Record<PropertyKey, unknown>)[key],
+    document,
+  );
+  if (issue.code === 'unrecognized_keys') {
+    const key = issue.keys[0]!;
+    return new MeasurementError('unknown-key', {
+      path: path === '' ? key : `${path}.${key}`,
+      expected: 'only keys of the schema (docs/CONDITIONS.md)',
+      received: key,
+      ...nearest(key, documentKeys()),
+    });
+  }
+  if (received === undefined) return new MeasurementError('missing-input', { path, expected: issue.message });
+  const code = issue.code === 'invalid_type' ? 'wrong-type' : 'out-of-range';
+  const percent = typeof received === 'number' && issue.code === 'too_big' && received > 1 && received <= 100;
+  return new MeasurementError(code, {
+    path,
+    expected: issue.message,
+    received,
+    ...(percent ? { hint: `Write ${received / 100} for ${received} %.` } : {}),
+  });
+}
