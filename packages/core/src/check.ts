@@ -114,16 +114,18 @@ export function nearest(word: unknown, words: readonly string[]): { hint?: strin
   return least <= Math.max(2, Math.floor(closest.length * 0.6)) ? { hint: `Did you mean '${closest}'?` } : {};
 }
 
-/** Levenshtein distance of two short words. */
+/** Edit distance of two short words: letters put in, left out, replaced, or two neighbours swapped. */
 function editDistance(a: string, b: string): number {
-  let row = Array.from({ length: b.length + 1 }, (_, column) => column);
+  const rows: number[][] = [Array.from({ length: b.length + 1 }, (_, column) => column)];
   for (let i = 1; i <= a.length; i++) {
-    const next = [i];
+    const row = [i];
     for (let j = 1; j <= b.length; j++) {
-      const replaced = row[j - 1]! + (a[i - 1] === b[j - 1] ? 0 : 1);
-      next.push(Math.min(replaced, row[j]! + 1, next[j - 1]! + 1));
+      const above = rows[i - 1]!;
+      const replaced = above[j - 1]! + (a[i - 1] === b[j - 1] ? 0 : 1);
+      const swapped = i > 1 && j > 1 && a[i - 1] === b[j - 2] && a[i - 2] === b[j - 1];
+      row.push(Math.min(replaced, above[j]! + 1, row[j - 1]! + 1, swapped ? rows[i - 2]![j - 2]! + 1 : Infinity));
     }
-    row = next;
+    rows.push(row);
   }
-  return row[b.length]!;
+  return rows[a.length]![b.length]!;
 }
