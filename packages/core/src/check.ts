@@ -123,7 +123,9 @@ function editDistance(a: string, b: string): number {
       const above = rows[i - 1]!;
       const replaced = above[j - 1]! + (a[i - 1] === b[j - 1] ? 0 : 1);
       const swapped = i > 1 && j > 1 && a[i - 1] === b[j - 2] && a[i - 2] === b[j - 1];
-      row.push(Math.min(replaced, above[j]! + 1, row[j - 1]! + 1, swapped ? rows[i - 2]![j - 2]! + 1 : Infinity));
+      row.push(
+        Math.min(replaced, above[j]! + 1, row[j - 1]! + 1, swapped ? rows[i - 2]![j - 2]! + 1 : Infinity),
+      );
     }
     rows.push(row);
   }

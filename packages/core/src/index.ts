@@ -125,4 +125,5 @@ export {
   wavenumberFromWavelength,
   zeroCelsius,
 } from './units.js';
+export { softwareVersion } from './version.js';
 export { isView, type NumericArray, rowMajorStride, type View, view } from './view.js';

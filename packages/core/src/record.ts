@@ -4,6 +4,7 @@
  * This subpath is the only one that needs zod. A document of a newer major version is refused.
  */
 import * as z from 'zod';
+import type { Area } from './areas.js';
 import { bandFromDescriptor } from './band.js';
 import { nearest } from './check.js';
 import {
@@ -22,6 +23,8 @@ import type {
 import { compact } from './document.js';
 import { MeasurementError, within } from './errors.js';
 import { air, infraredWindow, type Layer, layer } from './layer.js';
+import { type MeasurementModel, measurementModel } from './measurement.js';
+import { type Recorrection, recorrection } from './recorrection.js';
 import { checkedRegion, type Region } from './regions.js';
 import {
   type MeasurementResult,
@@ -83,6 +86,22 @@ export function readConditionsDocument(document: unknown): DescribedConditions {
         instrument: recorded.instrument && instrumentOf(recorded.instrument),
         resolution: recorded.resolution,
       }) as RecordedConditions),
+  };
+}
+
+/**
+ * The models of described conditions: the whole frame's, and one for every area. They read recorded temperature
+ * where the document has recorded settings, apparent temperature otherwise. Feed them to `surfaceFrameByArea`.
+ */
+export function describedModels({ conditions, areas, recorded }: DescribedConditions): {
+  readonly model: MeasurementModel | Recorrection;
+  readonly areas: readonly (Area & { readonly name: string })[];
+} {
+  const modelOf = (actual: Conditions): MeasurementModel | Recorrection =>
+    recorded === undefined ? measurementModel(actual) : recorrection(recorded, actual);
+  return {
+    model: modelOf(conditions),
+    areas: areas.map(({ name, region, conditions: own }) => ({ name, region, model: modelOf(own) })),
   };
 }
 
