@@ -81,11 +81,11 @@ export function pictureSvg(panels: readonly Panel[], options: PictureOptions = {
   const note = `Hatched: no value. Dotted: doubtful value (saturated).`;
   return [
     `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${top + height + 40}" viewBox="0 0 ${width} ${top + height + 40}" role="img" aria-labelledby="title description" font-family="system-ui, sans-serif">`,
-    `<title id="title">${escape(title)}</title>`,
-    `<desc id="description">${escape(description(panels, range, unit))}</desc>`,
+    `<title id="title">${escaped(title)}</title>`,
+    `<desc id="description">${escaped(description(panels, range, unit))}</desc>`,
     patterns,
     `<rect width="100%" height="100%" fill="#ffffff"/>`,
-    `<text x="${margin}" y="24" font-size="16" font-weight="600" fill="#1a1a1a">${escape(title)}</text>`,
+    `<text x="${margin}" y="24" font-size="16" font-weight="600" fill="#1a1a1a">${escaped(title)}</text>`,
     ...drawn,
     legend,
     `<text x="${margin}" y="${top + height + 24}" font-size="11" fill="#444444">${note}</text>`,
@@ -141,11 +141,11 @@ function panelSvg(
     return (
       `<circle cx="${cx}" cy="${cy}" r="4" fill="none" stroke="#000000" stroke-width="3"/>` +
       `<circle cx="${cx}" cy="${cy}" r="4" fill="none" stroke="#ffffff" stroke-width="1.5"/>` +
-      `<text x="${right ? cx - 8 : cx + 8}" y="${cy + 4}" text-anchor="${right ? 'end' : 'start'}" ${halo}>${escape(label)}</text>`
+      `<text x="${right ? cx - 8 : cx + 8}" y="${cy + 4}" text-anchor="${right ? 'end' : 'start'}" ${halo}>${escaped(label)}</text>`
     );
   });
   return [
-    `<text x="${x}" y="${y - 8}" font-size="13" fill="#1a1a1a">${escape(title)}</text>`,
+    `<text x="${x}" y="${y - 8}" font-size="13" fill="#1a1a1a">${escaped(title)}</text>`,
     `<rect ${box} fill="url(#none)"/>`,
     `<image ${box} preserveAspectRatio="none" style="image-rendering:pixelated" href="data:image/png;base64,${base64(png)}"/>`,
     ...doubtful,
@@ -248,7 +248,7 @@ function base64(bytes: Uint8Array): string {
   return btoa(text);
 }
 
-function escape(text: string): string {
+function escaped(text: string): string {
   const entities: Record<string, string> = { '&': '&amp;', '<': '&lt;', '>': '&gt;', '"': '&quot;' };
   return text.replace(/[&<>"]/g, (character) => entities[character]!);
 }
