@@ -81,6 +81,7 @@ export {
   surfaceTemperature,
 } from './measurement.js';
 export type { RadianceTerm } from './measurement-equation.js';
+export type { ReadingQuantity } from './model.js';
 export {
   bandFraction,
   blackbodyExitance,
