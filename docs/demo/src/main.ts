@@ -14,7 +14,7 @@ const pictures: Readonly<
   Record<Scene, { readonly from: number; readonly to: number; readonly marked: readonly string[] }>
 > = {
   compressor: { from: -20, to: 110, marked: ['discharge pipe', 'flange', 'cladding'] },
-  'switch-cabinet': { from: 20, to: 85, marked: ['L3 bare', 'L3 painted'] },
+  'switch-cabinet': { from: 20, to: 85, marked: ['joint L3 bare', 'joint L3 painted'] },
   'oven-front': { from: 120, to: 330, marked: ['apron'] },
 };
 

@@ -11,6 +11,7 @@ import {
   type Band,
   type Conditions,
   calibratedBand,
+  kelvin,
   layer,
   type MeasurementResult,
   measurementModel,
@@ -102,11 +103,7 @@ async function correctBand(scene: SceneBand): Promise<SatelliteBand> {
     surface,
     meanBrightness,
     meanSurface: mean(surface.temperature.data),
-    result: measurementResult(
-      band.temperature(band.radiance(kelvinOf(meanBrightness))),
-      conditions,
-      uncertainties,
-    ),
+    result: measurementResult(kelvin(meanBrightness), conditions, uncertainties),
   };
 }
 
