@@ -55,8 +55,8 @@ async function showSatellite(): Promise<void> {
     writeOutput(`satellite-${file}-record.json`, `${JSON.stringify(result, null, 2)}\n`);
   }
   const panels = bands.flatMap(({ name, brightness, surface }): Panel[] => [
-    { title: `${name}: brightness temperature`, frame: plane(brightness) },
-    { title: `${name}: surface temperature`, frame: plane(surface.temperature), flags: plane(surface.flags) },
+    { title: `${name}, brightness`, frame: plane(brightness) },
+    { title: `${name}, surface`, frame: plane(surface.temperature), flags: plane(surface.flags) },
   ]);
   writeOutput(
     'satellite.svg',

@@ -27,6 +27,7 @@ export interface Panel {
   readonly frame: View;
   /** Reason codes of the same shape: from 128 on a pixel has a doubtful value. */
   readonly flags?: View | undefined;
+  /** Places pointed at: a letter in the picture, its label in a key below it. */
   readonly marks?: readonly { readonly row: number; readonly column: number; readonly label: string }[];
 }
 
@@ -40,6 +41,9 @@ export interface PictureOptions {
   readonly pixelSize?: number;
   readonly title?: string;
 }
+
+/** Height of a line of the key. [CSS px] */
+const keyLine = 17;
 
 const interpolators: Readonly<Record<ColourMap, (share: number) => string>> = {
   inferno: interpolateInferno,
@@ -78,9 +82,10 @@ export function pictureSvg(panels: readonly Panel[], options: PictureOptions = {
   });
   const legend = legendSvg(range, table, unit, x, top, height);
   const width = x + 90;
+  const below = top + height + keyLine * Math.max(0, ...panels.map(({ marks = [] }) => marks.length));
   const note = `Hatched: no value. Dotted: doubtful value (saturated).`;
   return [
-    `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${top + height + 40}" viewBox="0 0 ${width} ${top + height + 40}" role="img" aria-labelledby="title description" font-family="system-ui, sans-serif">`,
+    `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${below + 40}" viewBox="0 0 ${width} ${below + 40}" role="img" aria-labelledby="title description" font-family="system-ui, sans-serif">`,
     `<title id="title">${escaped(title)}</title>`,
     `<desc id="description">${escaped(description(panels, range, unit))}</desc>`,
     patterns,
@@ -88,7 +93,7 @@ export function pictureSvg(panels: readonly Panel[], options: PictureOptions = {
     `<text x="${margin}" y="24" font-size="16" font-weight="600" fill="#1a1a1a">${escaped(title)}</text>`,
     ...drawn,
     legend,
-    `<text x="${margin}" y="${top + height + 24}" font-size="11" fill="#444444">${note}</text>`,
+    `<text x="${margin}" y="${below + 26}" font-size="11" fill="#444444">${note}</text>`,
     '</svg>',
     '',
   ].join('\n');
@@ -134,14 +139,13 @@ function panelSvg(
   }
   const png = encode({ width: columns, height: rows, data: pixels, channels: 4, depth: 8 });
   const box = `x="${x}" y="${y}" width="${columns * size}" height="${rows * size}"`;
-  const labels = marks.map(({ row, column, label }) => {
+  const labels = marks.map(({ row, column, label }, i) => {
     const [cx, cy] = [x + (column + 0.5) * size, y + (row + 0.5) * size];
-    const right = column > columns * 0.7;
-    const halo = 'paint-order="stroke" stroke="#000000" stroke-width="3" fill="#ffffff" font-size="11"';
+    const letter = String.fromCharCode(65 + (i % 26));
     return (
-      `<circle cx="${cx}" cy="${cy}" r="4" fill="none" stroke="#000000" stroke-width="3"/>` +
-      `<circle cx="${cx}" cy="${cy}" r="4" fill="none" stroke="#ffffff" stroke-width="1.5"/>` +
-      `<text x="${right ? cx - 8 : cx + 8}" y="${cy + 4}" text-anchor="${right ? 'end' : 'start'}" ${halo}>${escaped(label)}</text>`
+      `<circle cx="${cx}" cy="${cy}" r="9" fill="#ffffff" stroke="#000000" stroke-width="1.5"/>` +
+      `<text x="${cx}" y="${cy + 4}" font-size="12" font-weight="600" text-anchor="middle" fill="#000000">${letter}</text>` +
+      `<text x="${x}" y="${y + rows * size + keyLine * (i + 1)}" font-size="12" fill="#1a1a1a">${letter}  ${escaped(label)}</text>`
     );
   });
   return [

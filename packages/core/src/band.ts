@@ -86,7 +86,7 @@ export interface Band {
  * @param options - `detector: 'photon'` multiplies R by λ/λ_mid, λ_mid the middle of the limits.
  * @throws {MeasurementError} `wrong-type`, `not-finite`, `out-of-range`, `unknown-key`.
  * @example
- * topHatBand(8, 14).radiance(celsius(25)) // 53.10…
+ * topHatBand(8, 14).radiance(celsius(25)) // 53.39…
  */
 export function topHatBand(from: number, to: number, options: { readonly detector?: Detector } = {}): Band {
   const { detector } = detectorOf(options, '', ['detector']);
@@ -362,7 +362,7 @@ function detectorKey(detector: Detector): { detector?: Detector } {
   return detector === 'photon' ? { detector } : {};
 }
 
-/** A photon detector answers in proportion to wavelength: R·λ/λ_mid. */
+/** A photon detector answers in proportion to wavelength: R·λ/λ_mid.   [METHOD.md eq. 8] */
 function withDetector(response: SpectralFunction, detector: Detector): SpectralFunction {
   if (detector === 'energy') return response;
   const middle = (response.breakpoints[0]! + response.breakpoints.at(-1)!) / 2;

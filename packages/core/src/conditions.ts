@@ -26,7 +26,7 @@ export interface InstrumentAccuracy {
   readonly kelvin?: number;
   /** [%] of what `percentOf` says. */
   readonly percent?: number;
-  /** What the percentage is of. By trade usage the Celsius reading (common practice, no source). */
+  /** What the percentage is of; required beside `percent`. Data sheets mostly mean the Celsius reading. Common practice, no source. */
   readonly percentOf?: 'celsius' | 'kelvin' | 'range';
 }
 

@@ -47,11 +47,16 @@ export interface ErrorDetails {
 export class MeasurementError extends Error {
   override readonly name: string = 'MeasurementError';
   readonly code: MeasurementErrorCode;
+  /** Name of the input at fault, by its path. */
   readonly path: string | undefined;
+  /** What was expected. */
   readonly expected: string | undefined;
+  /** What came. */
   readonly received: unknown;
+  /** What to write instead. */
   readonly hint: string | undefined;
 
+  /** Builds the message from the details. */
   constructor(code: MeasurementErrorCode, details: ErrorDetails) {
     super(messageOf(code, details), details.cause === undefined ? undefined : { cause: details.cause });
     this.code = code;
@@ -62,13 +67,14 @@ export class MeasurementError extends Error {
   }
 }
 
-/** Runs a check and puts a prefix before the path of what it throws. */
-export function within<Result>(prefix: string, check: () => Result): Result {
+/** Runs a check and puts a prefix before the path of what it throws, in place of `strip` where that leads it. */
+export function within<Result>(prefix: string, check: () => Result, strip: RegExp = /^$/): Result {
   try {
     return check();
   } catch (error) {
     if (!isMeasurementError(error)) throw error;
-    const path = error.path === undefined || error.path === '' ? prefix : `${prefix}.${error.path}`;
+    const own = error.path?.replace(strip, '') ?? '';
+    const path = own === '' ? prefix : `${prefix}.${own}`;
     const { code, expected, received, hint } = error;
     throw new MeasurementError(code, {
       path,

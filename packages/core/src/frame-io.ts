@@ -58,6 +58,7 @@ export function refuseOtherUnits(input: View, path: string): void {
   });
 }
 
+/** The output views: those given, checked, or new ones of the frame's shape. */
 export function outputOf(
   out: unknown,
   shape: readonly number[],

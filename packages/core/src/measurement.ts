@@ -106,7 +106,7 @@ export interface MeasurementModel extends ModelAtPoint {
  *   `unknown-key`, `wrong-type`, `not-finite`, `out-of-range`, `unsupported`.
  * @example
  * const model = measurementModel({ band: topHatBand(8, 14), emissivity: 0.86, reflectedApparentTemperature: celsius(21) });
- * toCelsius(model.surfaceTemperature(celsius(62.4))); // 67.98…
+ * toCelsius(model.surfaceTemperature(celsius(62.4))); // 68.06…
  */
 export function measurementModel(conditions: Conditions): MeasurementModel {
   return modelOf(engineOf(checkedConditions(conditions)), undefined);

@@ -131,12 +131,12 @@ export function recompute(record: unknown): MeasurementResult {
 
 /** JSON Schema (draft 2020-12) of a conditions document. */
 export function conditionsJsonSchema(): Record<string, unknown> {
-  return z.toJSONSchema(conditionsSchema) as Record<string, unknown>;
+  return z.toJSONSchema(conditionsSchema, { reused: 'ref' }) as Record<string, unknown>;
 }
 
 /** JSON Schema (draft 2020-12) of a result record. */
 export function resultJsonSchema(): Record<string, unknown> {
-  return z.toJSONSchema(resultSchema) as Record<string, unknown>;
+  return z.toJSONSchema(resultSchema, { reused: 'ref' }) as Record<string, unknown>;
 }
 
 /** An area says what differs; a reflected radiance takes the place of a temperature, and the other way round. */
@@ -147,15 +147,18 @@ function overridden(document: ConditionsDocument, area: AreaConditionsDocument):
   return { ...base, ...area } as ConditionsDocument;
 }
 
-/** An area has the uncertainties of the document but for what it states; those of another path do not fit its own. */
+/** An area has the uncertainties of the document but for what it states, and for inputs it gives in another way. */
 function areaUncertainties(
   whole: Uncertainties | undefined,
-  area: NonNullable<ConditionsDocument['areas']>[number],
+  { conditions, uncertainties }: NonNullable<ConditionsDocument['areas']>[number],
 ): Uncertainties | undefined {
-  if (whole === undefined) return area.uncertainties;
-  const { path, ...rest } = whole;
-  const kept = area.conditions.path === undefined && path !== undefined ? { path } : {};
-  return { ...rest, ...kept, ...area.uncertainties };
+  if (whole === undefined) return uncertainties;
+  const kept: Record<string, unknown> = { ...whole };
+  if (conditions.path !== undefined) delete kept.path;
+  if (conditions.surface !== undefined) delete kept.surface;
+  if (conditions.reflectedRadiance !== undefined) delete kept.reflectedApparentTemperature;
+  if (conditions.reflectedApparentTemperature !== undefined) delete kept.reflectedRadiance;
+  return { ...kept, ...uncertainties };
 }
 
 function conditionsOf(document: ConditionsDocument): Conditions {
@@ -181,7 +184,7 @@ function conditionsOf(document: ConditionsDocument): Conditions {
 
 function layersOf(path: readonly LayerDocument[], name: string): Layer[] {
   return path.map((document, k) =>
-    within(`${name}[${k}]`, () => {
+    layerWithin(`${name}[${k}]`, () => {
       const { kind, temperature, mirroredTemperature, ...rest } = document;
       const input = compact({
         ...rest,
@@ -193,6 +196,11 @@ function layersOf(path: readonly LayerDocument[], name: string): Layer[] {
       return layer(input as Parameters<typeof layer>[0]);
     }),
   );
+}
+
+/** A layer's own errors name the function that makes it; in a document the path says which layer it is. */
+function layerWithin(name: string, make: () => Layer): Layer {
+  return within(name, make, /^(air|infraredWindow|layer)\./);
 }
 
 function instrumentOf(document: InstrumentDocument): Instrument {
@@ -272,7 +280,8 @@ function errorOf(issue: z.core.$ZodIssue, document: unknown): MeasurementError {
     });
   }
   if (received === undefined) return new MeasurementError('missing-input', { path, expected: issue.message });
-  const code = issue.code === 'invalid_type' ? 'wrong-type' : 'out-of-range';
+  const notAnObject = issue.code === 'invalid_union' && typeof received !== 'object';
+  const code = issue.code === 'invalid_type' || notAnObject ? 'wrong-type' : 'out-of-range';
   const percent = typeof received === 'number' && issue.code === 'too_big' && received > 1 && received <= 100;
   return new MeasurementError(code, {
     path,

@@ -52,11 +52,20 @@ export interface Recorrection {
    * @throws {MeasurementError} `no-solution` when the recorded settings leave nothing for the target.
    */
   recordedTemperature(surface: AnyKelvin, pixel?: Pixel): Kelvin<'recorded temperature'>;
-  /** Sensitivity of the surface temperature to `recorded`, to the recorded settings and to every actual input. */
+  /**
+   * Sensitivity of the surface temperature to `recorded`, to the recorded settings and to every actual input.
+   * @throws {MeasurementError} as `surfaceTemperature`.
+   */
   sensitivities(recorded: RecordedKelvin, pixel?: Pixel): Sensitivities;
-  /** True surface temperatures of a frame of recorded temperatures; as `MeasurementModel.surfaceFrame`. */
+  /**
+   * True surface temperatures of a frame of recorded temperatures; as `MeasurementModel.surfaceFrame`.
+   * @throws {MeasurementError} as there.
+   */
   surfaceFrame(frame: FrameInput, out?: FrameOutput): SurfaceFrame;
-  /** The recorrection at one pixel, where inputs are maps. */
+  /**
+   * The recorrection at one pixel, where inputs are maps.
+   * @throws {MeasurementError} `out-of-range` for a pixel outside a map or a bad cell.
+   */
   at(pixel: Pixel): Recorrection;
 }
 

@@ -38,7 +38,11 @@ export type Region =
       readonly mask: View;
     };
 
-/** A rectangle of pixels: rectangle(10, 20, 5, 8) covers rows 10–14, columns 20–27. */
+/**
+ * A rectangle of pixels: rectangle(10, 20, 5, 8) covers rows 10–14, columns 20–27.
+ *
+ * @throws {MeasurementError} `wrong-type`, `not-finite`; `out-of-range` for an extent that is not above 0.
+ */
 export function rectangle(row: number, column: number, height: number, width: number): Region {
   return checkedRegion({ kind: 'rectangle', row, column, height, width });
 }
@@ -221,7 +225,7 @@ export function forEachPixel(
  *
  * @param shape - Rows and columns of the frame.
  * @returns uint8 view (row, column).
- * @throws {MeasurementError} as {@link checkedRegion}; `wrong-shape`.
+ * @throws {MeasurementError} as {@link rectangle}; `wrong-shape`.
  */
 export function regionMask(
   region: Region,
@@ -240,7 +244,7 @@ export function regionMask(
  * @param shape - Rows and columns of the frame.
  * @param background - Value outside all regions.
  * @returns float64 view (row, column), to be used as emissivity, transmittance, temperature …
- * @throws {MeasurementError} as {@link checkedRegion}; `wrong-shape`.
+ * @throws {MeasurementError} as {@link rectangle}; `wrong-shape`.
  * @example
  * mapFromRegions([120, 160], 0.93, [{ region: rectangle(10, 20, 5, 8), value: 0.78 }])
  */

@@ -37,6 +37,7 @@ const ratioCurveOrInterval = z.union([ratio, interval, curve], {
 const detector = z.enum(['energy', 'photon'], { error: () => "'energy' or 'photon'" }).optional();
 const radianceUnit = z.enum(['W·m⁻²·sr⁻¹', 'W·m⁻²·sr⁻¹·µm⁻¹', 'signal']).optional();
 const calibrationRange = z.strictObject({ from: number(), to: number() }).optional();
+const bandText = 'a band such as { "kind": "top-hat", "from": 8, "to": 14 }';
 const plainBand = z.union(
   [
     z.strictObject({ kind: z.literal('top-hat'), from: number(), to: number(), detector }),
@@ -61,12 +62,14 @@ const plainBand = z.union(
       range: calibrationRange,
     }),
   ],
-  { error: () => 'a band such as { "kind": "top-hat", "from": 8, "to": 14 }' },
+  { error: () => bandText },
 );
-// One weighting deep: deeper ones are written as the product of their curves.
-const band = z.union([plainBand, z.strictObject({ kind: z.literal('weighted'), band: plainBand, curve })], {
-  error: () => 'a band such as { "kind": "top-hat", "from": 8, "to": 14 }',
-});
+const weighted = (inner: z.ZodType): z.ZodType =>
+  z.union([plainBand, z.strictObject({ kind: z.literal('weighted'), band: inner, curve })], {
+    error: () => bandText,
+  });
+// Three weightings deep: nothing recursive, so that a hostile document cannot nest without end.
+const band = weighted(weighted(weighted(plainBand)));
 
 const layer = z.strictObject({
   kind: z.enum(['air', 'window', 'layer'], { error: () => "'air', 'window' or 'layer'" }),

@@ -1,5 +1,6 @@
 /**
- * First-order uncertainty of one reading: u² = Σ (c_i·u_i)², after JCGM 100:2008, 5.1.2, for independent inputs.
+ * First-order uncertainty of one reading: u² = Σ (c_i·u_i)², for independent inputs.   [METHOD.md eq. 18;
+ * JCGM 100:2008, 5.1.2]
  *
  * Inputs are standard uncertainties, half-widths of a distribution, or expanded uncertainties. U = k·u with k = 2.
  */
