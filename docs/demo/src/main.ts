@@ -99,6 +99,11 @@ async function showScene(scene: Scene): Promise<void> {
     `pixels without a value: ${surface.unsolved}; flags: ${reasons.map(([n, c]) => `${n} ${c}`).join(', ') || 'none'}`,
   );
   for (const text of lesson(outcome.regions)) print(text);
+  const cautions = [
+    ...new Set(outcome.regions.flatMap(({ result }) => result!.cautions.map(({ code }) => code))),
+  ];
+  if (cautions.length > 0)
+    print(`cautions on some regions: ${cautions.join(', ')} (in the records, with what to do)`);
   print('');
   await writeFrames(outputPath(`${scene}-surface.tif`), surface);
   await writeFrames(outputPath(`${scene}-surface.npy`), surface);
