@@ -59,7 +59,7 @@ export function stopIfAborted(signal: AbortSignal | undefined): void {
   });
 }
 
-/** The nearest of a few words, where one is near: at most a third of its letters differ. */
+/** The nearest of a few words, where one is near: at most two letters or two fifths of them differ. */
 export function nearest(word: unknown, words: readonly string[]): string | undefined {
   if (typeof word !== 'string' || word.length > 60) return undefined;
   let closest: string | undefined;
@@ -68,7 +68,9 @@ export function nearest(word: unknown, words: readonly string[]): string | undef
     const distance = editDistance(word.toLowerCase(), candidate.toLowerCase());
     if (distance < least) [closest, least] = [candidate, distance];
   }
-  return closest !== undefined && least <= Math.max(2, Math.floor(closest.length / 3)) ? closest : undefined;
+  return closest !== undefined && least <= Math.max(2, Math.floor(closest.length * 0.4))
+    ? closest
+    : undefined;
 }
 
 function editDistance(a: string, b: string): number {

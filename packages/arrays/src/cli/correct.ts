@@ -107,7 +107,7 @@ function readArguments(): ReturnType<typeof parseArgs<{ options: typeof options;
   try {
     return parseArgs({ options, allowPositionals: true });
   } catch (error) {
-    throw new UsageError(`${(error as Error).message}\n\n${usage}`);
+    throw new UsageError(`${(error as Error).message.split('. ')[0]}.\n\n${usage}`);
   }
 }
 

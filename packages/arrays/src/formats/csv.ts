@@ -8,7 +8,7 @@
 import { parseGrid } from '../delimited/parse.js';
 import { type DataType, dataTypes, elementArray, isFloat } from '../element-type.js';
 import { ArrayError } from '../errors.js';
-import type { FormatReader, FormatWriter, FramesToWrite, StoredArray } from '../format.js';
+import type { FormatReader, FormatWriter, FramesToWrite, StoredArray, TableOptions } from '../format.js';
 import { checkBytes } from '../limits.js';
 import {
   checkedDescription,
@@ -22,7 +22,8 @@ export const csvReader: FormatReader = {
   async open(source, { limits, table }) {
     checkBytes(source.size, limits, source.name, 'the text of a grid');
     const text = decodeText(await source.read(0, source.size));
-    const grid = parseGrid(text, table, limits, source.name);
+    const written = claimsDescription(text.slice(0, 4096));
+    const grid = parseGrid(text, written ? { ...ourDialect, ...given(table) } : table, limits, source.name);
     const { shape, values, dialect, comments, header, closing } = grid;
     const entries = comments.flatMap((comment): [string, string][] => {
       const match = /^([\w .-]{1,60}?)\s*[:=]\s*(.*)$/.exec(comment);
@@ -52,6 +53,13 @@ export const csvReader: FormatReader = {
     return stored;
   },
 };
+
+/** How the writer below writes. */
+const ourDialect = { delimiter: ',', decimal: '.' } as const;
+
+function given(table: TableOptions): TableOptions {
+  return Object.fromEntries(Object.entries(table).filter(([, value]) => value !== undefined));
+}
 
 /** Text by its mark; without one UTF-8 where the bytes are, else Latin-1 (a degree sign of an older program). */
 function decodeText(bytes: Uint8Array): string {
@@ -127,7 +135,7 @@ function shortest64(value: number): string {
   return Number.isNaN(value) ? 'NaN' : value > 0 ? 'inf' : '-inf';
 }
 
-/** Fewest digits that give the same float32 again; nine always do. */
+/** Six to nine digits, the fewest that give the same float32 again. */
 function shortest32(value: number): string {
   if (!Number.isFinite(value) || value === 0) return shortest64(value);
   for (let digits = 6; digits < 9; digits++) {
