@@ -9,7 +9,7 @@ import type { Conditions } from './conditions.js';
 import { type EquationAt, equationAt } from './evaluation.js';
 import type { Layer } from './layer.js';
 import { type EquationInput, measurementEquation, partialDerivatives } from './measurement-equation.js';
-import type { Pixel } from './scalar.js';
+import { type Pixel, type Scalar, scalarAt } from './scalar.js';
 
 /** Kelvin per unit of the input (per kelvin, per 1 of a ratio, per unit of the band's radiance), by input name. */
 export type Sensitivities = Readonly<Record<string, number>>;
@@ -53,6 +53,8 @@ function curveDerivative(
   pixel: Pixel | undefined,
 ): number {
   const path = conditions.path ?? [];
+  // A temperature beside the curve may be a map: a number is needed before it can be a blackbody's.
+  const kelvinOf = (value: Scalar | undefined): number => scalarAt(value as Scalar, pixel, input.name);
   const blackbodyBehind = (temperature: number, nearer: readonly Layer[]): number => {
     const { band } = conditions;
     const black = {
@@ -64,7 +66,7 @@ function curveDerivative(
     return radianceOf(black, temperature, pixel);
   };
   if (input.layer === undefined) {
-    const reflected = conditions.reflectedApparentTemperature as number;
+    const reflected = kelvinOf(conditions.reflectedApparentTemperature);
     return blackbodyBehind(kelvin, path) - blackbodyBehind(reflected, path);
   }
   const k = input.layer;
@@ -72,9 +74,9 @@ function curveDerivative(
   const nearer = path.slice(k + 1);
   const darkOffset = blackOffset(conditions, nearer, pixel);
   const emitted =
-    layer.temperature === undefined ? darkOffset : blackbodyBehind(layer.temperature as number, nearer);
+    layer.temperature === undefined ? darkOffset : blackbodyBehind(kelvinOf(layer.temperature), nearer);
   if (input.name.endsWith('.reflectance')) {
-    return blackbodyBehind(layer.mirroredTemperature as number, nearer) - emitted;
+    return blackbodyBehind(kelvinOf(layer.mirroredTemperature), nearer) - emitted;
   }
   // The layer stays in place for what lies behind it, but lets everything through and adds nothing.
   const clear: Layer = Object.freeze({
