@@ -138,8 +138,8 @@ export function checkedConditions(input: unknown): Conditions {
   if (given.reflectedMeasuredAt !== undefined) {
     oneOf(given.reflectedMeasuredAt, 'reflectedMeasuredAt', ['target', 'instrument']);
   }
-  if (given.instrument !== undefined) checkInstrument(given.instrument);
-  if (given.origins !== undefined) plainObject(given.origins, 'origins', Object.keys(given.origins));
+  if (given.instrument !== undefined) checked.instrument = checkedInstrument(given.instrument);
+  if (given.origins !== undefined) checked.origins = checkedOrigins(given.origins);
   return Object.freeze(checked);
 }
 
@@ -149,11 +149,11 @@ export function checkedRecorded(
   band: Band,
 ): Conditions & Pick<RecordedConditions, 'resolution'> {
   const given = plainObject(input, 'recorded', recordedKeys) as Partial<RecordedConditions>;
-  if (given.band !== undefined && JSON.stringify(given.band.descriptor) !== JSON.stringify(band.descriptor)) {
+  if (given.band !== undefined && !sameBand(given.band, band)) {
     throw new MeasurementError('wrong-band', {
       path: 'recorded.band',
       expected: 'the band of the actual conditions',
-      received: given.band.descriptor,
+      received: isBand(given.band) ? given.band.descriptor : given.band,
       hint: 'A recorded temperature can only be taken back in the band it was made in.',
     });
   }
@@ -161,6 +161,17 @@ export function checkedRecorded(
   if (resolution !== undefined) positive(resolution, 'recorded.resolution');
   const checked = within('recorded', () => checkedConditions({ ...rest, band }));
   return Object.freeze({ ...checked, ...(resolution === undefined ? {} : { resolution }) });
+}
+
+/** Whether two bands are the same, by their descriptors; the order of keys does not count. */
+function sameBand(one: unknown, other: Band): boolean {
+  const text = (descriptor: unknown): string =>
+    JSON.stringify(descriptor, (_, value: unknown) =>
+      typeof value === 'object' && value !== null && !Array.isArray(value)
+        ? Object.fromEntries(Object.entries(value).sort(([a], [b]) => (a < b ? -1 : 1)))
+        : value,
+    );
+  return isBand(one) && text(one.descriptor) === text(other.descriptor);
 }
 
 function checkReflected(given: Partial<Conditions>): void {
@@ -194,6 +205,17 @@ function checkedPath(path: unknown): readonly Layer[] {
     });
   }
   return Object.freeze([...path]);
+}
+
+function checkedOrigins(origins: unknown): Readonly<Record<string, string>> {
+  const given = plainObject(origins, 'origins', Object.keys(Object(origins)));
+  for (const [name, origin] of Object.entries(given)) checkText(origin, `origins.${name}`);
+  return Object.freeze({ ...given }) as Readonly<Record<string, string>>;
+}
+
+function checkText(value: unknown, path: string): void {
+  if (typeof value === 'string') return;
+  throw new MeasurementError('wrong-type', { path, expected: 'a text', received: value });
 }
 
 function checkedSurface(surface: unknown, emissivity: Scalar | Curve): SurfaceTransmission {
@@ -234,7 +256,7 @@ function checkedSurface(surface: unknown, emissivity: Scalar | Curve): SurfaceTr
   });
 }
 
-function checkInstrument(input: unknown): void {
+function checkedInstrument(input: unknown): Instrument {
   const keys = ['measuringRange', 'netd', 'accuracy', 'ifov', 'lens', 'calibrationDate', 'warmUp'];
   const given = plainObject(input, 'instrument', keys);
   if (given.measuringRange !== undefined) {
@@ -257,14 +279,13 @@ function checkInstrument(input: unknown): void {
   if (given.ifov !== undefined) positive(given.ifov, 'instrument.ifov');
   if (given.warmUp !== undefined) notNegative(given.warmUp, 'instrument.warmUp');
   for (const key of ['lens', 'calibrationDate']) {
-    if (given[key] !== undefined && typeof given[key] !== 'string') {
-      throw new MeasurementError('wrong-type', {
-        path: `instrument.${key}`,
-        expected: 'a text',
-        received: given[key],
-      });
-    }
+    if (given[key] !== undefined) checkText(given[key], `instrument.${key}`);
   }
+  const copied = Object.entries(given).map(([key, value]) => [
+    key,
+    typeof value === 'object' ? Object.freeze({ ...value }) : value,
+  ]);
+  return Object.freeze(Object.fromEntries(copied)) as Instrument;
 }
 
 function checkAccuracy(input: unknown, hasRange: boolean): void {

@@ -92,12 +92,7 @@ export function readingOf(at: EngineAt, surface: AnyKelvin): number {
   const radiance = (seen - recorded.offset) / recorded.gain;
   const solution = targetBand.exact.temperature(radiance);
   if (!Number.isNaN(solution)) return solution;
-  throw new MeasurementError('no-solution', {
-    path: 'recorded',
-    expected: 'settings under which the instrument could have stored a temperature',
-    received: `${radiance} ${targetBand.radianceUnit} left for the target`,
-    hint: 'The recorded settings ascribe more radiance to surroundings and path than there is.',
-  });
+  throw notStorable(recorded, radiance);
 }
 
 /**
@@ -200,6 +195,20 @@ function noSurface(at: EngineAt, reading: number): MeasurementError {
     expected: 'a reading above what surroundings and path send by themselves',
     received: `${reading} K`,
     hint: `${showing} Check emissivity, reflected apparent temperature and path: one of them is too low or too high.`.trim(),
+  });
+}
+
+/** Settings that leave the target nothing, or less or more than any blackbody of the band's range sends. */
+function notStorable({ equation }: EquationAt, radiance: number): MeasurementError {
+  const { from, to } = equation.targetBand.range;
+  const tooMuch = radiance > equation.targetBand.exact.radiance(to);
+  return new MeasurementError('no-solution', {
+    path: 'recorded',
+    expected: `settings under which the instrument could have stored a temperature of ${from}…${to} K`,
+    received: `${radiance.toPrecision(4)} for the target`,
+    hint: tooMuch
+      ? 'The recorded settings ascribe too little radiance to surroundings and path, or too low an emissivity or transmittance.'
+      : 'The recorded settings ascribe more radiance to surroundings and path than there is.',
   });
 }
 
