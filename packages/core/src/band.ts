@@ -6,7 +6,7 @@
  * from −60 to 3000 °C; radiance within 1e-10 relative, 150–3500 K. Asserted in test/band.test.ts.
  */
 import { temperature as checkTemperature, finiteNumber, oneOf, plainObject, positive } from './check.js';
-import { type Curve, product, type SpectralFunction, spectralFunction } from './curve.js';
+import { type Curve, plainAbscissa, product, type SpectralFunction, spectralFunction } from './curve.js';
 import type {
   BandDescriptor,
   CalibratedDescriptor,
@@ -117,21 +117,24 @@ export function sampledBand(
 ): Band {
   const response = spectralFunction(samples, '', 'responsivity', ['detector']);
   const detector = samples.detector === undefined ? 'energy' : oneOf(samples.detector, 'detector', detectors);
-  limit(response.breakpoints[0]!, 'wavelength');
-  limit(response.breakpoints.at(-1)!, 'wavelength');
-  if (!samples.responsivity.some((value) => value > 0)) {
-    throw new MeasurementError('out-of-range', {
-      path: 'responsivity',
-      expected: 'some value above 0',
-      received: 0,
-    });
-  }
+  const abscissa = plainAbscissa(samples);
+  limit(response.breakpoints[0]!, 'wavelength' in abscissa ? 'wavelength' : 'wavenumber');
+  limit(response.breakpoints.at(-1)!, 'wavelength' in abscissa ? 'wavelength' : 'wavenumber');
   const responsivity = [...samples.responsivity];
-  const descriptor: SampledDescriptor =
-    'wavelength' in samples
-      ? { kind: 'sampled', wavelength: [...samples.wavelength], responsivity, ...detectorKey(detector) }
-      : { kind: 'sampled', wavenumber: [...samples.wavenumber], responsivity, ...detectorKey(detector) };
-  return spectralBand(withDetector(response, detector), descriptor);
+  const descriptor: SampledDescriptor = {
+    kind: 'sampled',
+    ...abscissa,
+    responsivity,
+    ...detectorKey(detector),
+  };
+  const band = spectralBand(withDetector(response, detector), descriptor);
+  // Samples of 0, or a step whose only value above 0 has no width.
+  if (band.exact.radiance(band.range.to) > 0) return band;
+  throw new MeasurementError('out-of-range', {
+    path: 'responsivity',
+    expected: 'some value above 0 that spans an interval',
+    received: responsivity,
+  });
 }
 
 /**
@@ -187,7 +190,11 @@ export function calibratedBand(calibration: Calibration): Band {
     });
   }
   const exact = calibratedKernel(calibration, range.from, range.to);
-  const descriptor: CalibratedDescriptor = { kind: 'calibrated', ...calibration };
+  const descriptor: CalibratedDescriptor = {
+    kind: 'calibrated',
+    ...calibration,
+    ...(given ? { range } : {}),
+  };
   return finished(exact, exact, undefined, descriptor, radianceUnit, range, undefined);
 }
 
@@ -243,7 +250,8 @@ export function reweighted(band: Band, weight: SpectralFunction, descriptor: Ban
     });
   }
   const { from, to } = band.limits;
-  if (weight.breakpoints[0]! > from || weight.breakpoints.at(-1)! < to) {
+  // 1e-12 forgives the rounding of limits that were turned from wavenumbers.
+  if (weight.breakpoints[0]! > from * (1 + 1e-12) || weight.breakpoints.at(-1)! < to * (1 - 1e-12)) {
     throw new MeasurementError('out-of-range', {
       path: 'curve',
       expected: `a curve that covers the band, ${from}…${to} µm`,
@@ -317,7 +325,11 @@ function finished(
       return quadratureKernel({ node: rule.node, weight }, range.from, range.to).radiance(kelvin);
     },
     weightedBy: (curve) =>
-      reweighted(band, spectralFunction(curve, 'curve'), { kind: 'weighted', band: descriptor, curve }),
+      reweighted(band, spectralFunction(curve, 'curve'), {
+        kind: 'weighted',
+        band: descriptor,
+        curve: { ...plainAbscissa(curve), value: [...curve.value] },
+      }),
   };
   return Object.freeze(band);
 }
@@ -349,7 +361,7 @@ function limit(value: unknown, path: string): number {
     path,
     expected: 'a wavelength of 0.3…100 µm',
     received: value,
-    ...(wavelength > 100 ? { hint: 'Wavelengths are in micrometres: write 8 for 8 µm.' } : {}),
+    hint: 'Wavelengths are in micrometres (8 for 8 µm), wavenumbers in cm⁻¹ (1250 for 8 µm).',
   });
 }
 

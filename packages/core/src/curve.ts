@@ -100,6 +100,15 @@ export function spectralFunction(
   };
 }
 
+/** The abscissa of checked samples as a plain list of its own, which the caller's later changes do not reach. */
+export function plainAbscissa(samples: {
+  readonly wavelength?: readonly number[];
+  readonly wavenumber?: readonly number[];
+}): { readonly wavelength: readonly number[] } | { readonly wavenumber: readonly number[] } {
+  const { wavelength, wavenumber = [] } = samples;
+  return wavelength === undefined ? { wavenumber: [...wavenumber] } : { wavelength: [...wavelength] };
+}
+
 /** The product of two functions over the part they share; both must be smooth between the merged breakpoints. */
 export function product(a: SpectralFunction, b: SpectralFunction): SpectralFunction {
   const from = Math.max(a.breakpoints[0]!, b.breakpoints[0]!);

@@ -35,7 +35,8 @@ export function quadratureKernel({ node, weight }: Rule, from: number, to: numbe
     radiance,
     slope,
     temperature(target) {
-      if (!(target >= lowest && target <= highest)) return Number.NaN;
+      // Nothing above 0: a band weighted to nothing, which every temperature gives.
+      if (!(target > 0 && target >= lowest && target <= highest)) return Number.NaN;
       // ln L is nearly linear in 1/T, so Newton's step is taken there; the bracket catches what overshoots.
       let low = from;
       let high = to;
@@ -89,8 +90,9 @@ function closedForm(c: number, a: number, b: number, from: number, to: number): 
       return ((radiance(temperature) / -Math.expm1(-x)) * x * a) / argument;
     },
     temperature(target) {
-      if (!(target >= lowest && target <= highest)) return Number.NaN;
-      return (c2 / Math.log1p(c / target) - b) / a;
+      if (!(target > 0 && target >= lowest && target <= highest)) return Number.NaN;
+      // Rounding must not put an end of the range just outside it.
+      return Math.min(to, Math.max(from, (c2 / Math.log1p(c / target) - b) / a));
     },
   };
 }

@@ -3,8 +3,8 @@
  * the fraction below a wavelength, total exitance, and the wavelength of the peak.
  *
  * Governing: Planck's law in ISO 80000-7 (radiance L, item 7-6.1) with the exact SI constants. [METHOD.md eq. 1–6]
- * These functions take bare finite numbers and are valid for any λ > 0 and T > 0; relative error < 1e-12,
- * asserted against tables in test/planck.test.ts. Values too small for a double come out as 0.
+ * These functions take bare finite numbers and are valid for any λ and T within 1e-30…1e30 µm and K; relative
+ * error < 1e-12, asserted against tables in test/planck.test.ts. Values too small for a double come out as 0.
  */
 import { positive } from './check.js';
 import {

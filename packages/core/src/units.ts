@@ -76,14 +76,22 @@ export function toFahrenheit(temperature: AnyKelvin): number {
   return finite(temperature, 'temperature') * 1.8 - 459.67;
 }
 
-/** Wavelength of a wavenumber. [cm⁻¹] → [µm] */
+/**
+ * Wavelength of a wavenumber. [cm⁻¹] → [µm]
+ *
+ * @throws {MeasurementError} `wrong-type`, `not-finite` or `out-of-range` for what is not a positive number.
+ */
 export function wavelengthFromWavenumber(wavenumber: number): number {
-  return 1e4 / wavenumber;
+  return 1e4 / positive(wavenumber, 'wavenumber', '1250 for 1250 cm⁻¹');
 }
 
-/** Wavenumber of a wavelength. [µm] → [cm⁻¹] */
+/**
+ * Wavenumber of a wavelength. [µm] → [cm⁻¹]
+ *
+ * @throws {MeasurementError} `wrong-type`, `not-finite` or `out-of-range` for what is not a positive number.
+ */
 export function wavenumberFromWavelength(wavelength: number): number {
-  return 1e4 / wavelength;
+  return 1e4 / positive(wavelength, 'wavelength', '8 for 8 µm');
 }
 
 /** Radians of an angle in degrees. [°] → [rad] */
@@ -91,19 +99,23 @@ export function radiansFromDegrees(angle: number): number {
   return (angle * Math.PI) / 180;
 }
 
-function finite(value: number, path: string): number {
+const writeTemperature = 'Write celsius(20), kelvin(293.15) or fahrenheit(68) with a plain number.';
+
+function finite(value: number, path: string, hint: string = writeTemperature): number {
   if (typeof value !== 'number') {
-    throw new MeasurementError('wrong-type', {
-      path,
-      expected: 'a number',
-      received: value,
-      hint: 'Write celsius(20), kelvin(293.15) or fahrenheit(68) with a plain number.',
-    });
+    throw new MeasurementError('wrong-type', { path, expected: 'a number', received: value, hint });
   }
   if (!Number.isFinite(value)) {
-    throw new MeasurementError('not-finite', { path, expected: 'a finite number', received: value });
+    throw new MeasurementError('not-finite', { path, expected: 'a finite number', received: value, hint });
   }
   return value;
+}
+
+/** The edge checks of `check.ts` stand on this file, so the two conversions of wavelength bring their own. */
+function positive(value: number, path: string, example: string): number {
+  const hint = `Write ${example}.`;
+  if (finite(value, path, hint) > 0) return value;
+  throw new MeasurementError('out-of-range', { path, expected: 'a number > 0', received: value, hint });
 }
 
 function absolute(value: number, received: number, unit: string): Kelvin {
@@ -113,6 +125,10 @@ function absolute(value: number, received: number, unit: string): Kelvin {
       path: 'temperature',
       expected: 'a temperature not below absolute zero',
       received: `${received} ${unit}`,
+      hint:
+        unit === 'K'
+          ? `Write celsius(${received}) for ${received} °C.`
+          : 'A difference has no zero point: write it as a plain number of kelvin.',
     });
   }
   return Math.max(value, 0) as Kelvin;

@@ -27,8 +27,14 @@ export interface View<Data extends NumericArray = NumericArray> {
   readonly offset: number;
 }
 
-/** Strides of a row-major (C order) array. */
+/**
+ * Strides of a row-major (C order) array.
+ *
+ * @throws {MeasurementError} `wrong-type` when the shape is not a list, `wrong-shape` for an extent that is not a
+ *   whole number ≥ 0.
+ */
 export function rowMajorStride(shape: readonly number[]): number[] {
+  checkShape(shape, 'shape');
   const stride = new Array<number>(shape.length);
   let step = 1;
   for (let axis = shape.length - 1; axis >= 0; axis--) {
@@ -48,9 +54,11 @@ export function sizeOf(shape: readonly number[]): number {
  *
  * @param data - The elements, row by row; at least as many as the shape holds.
  * @param shape - Extents, e.g. `[rows, columns]` or `[frames, rows, columns]`.
- * @throws {MeasurementError} `wrong-shape` when the data is too short or an extent is not a whole number ≥ 0.
+ * @throws {MeasurementError} `wrong-type` for what is no list of numbers; `wrong-shape` when the data is too short
+ *   or an extent is not a whole number ≥ 0.
  */
 export function view<Data extends NumericArray>(data: Data, shape: readonly number[]): View<Data> {
+  checkShape(shape, 'view');
   const result = emptyView(data, shape);
   checkView(result, 'view');
   return result;
@@ -88,9 +96,15 @@ export function checkView(value: unknown, path: string): asserts value is View {
     });
   }
   const { data, shape, stride, offset } = value;
-  if (!shape.every((extent) => Number.isInteger(extent) && extent >= 0)) {
-    throw new MeasurementError('wrong-shape', { path, expected: 'whole extents ≥ 0', received: shape });
+  if (data instanceof BigInt64Array || data instanceof BigUint64Array) {
+    throw new MeasurementError('wrong-type', {
+      path,
+      expected: 'data of numbers',
+      received: data,
+      hint: 'Write Float64Array.from(data, Number).',
+    });
   }
+  checkShape(shape, path);
   if (stride.length !== shape.length || !stride.every(Number.isInteger) || !Number.isInteger(offset)) {
     throw new MeasurementError('wrong-shape', {
       path,
@@ -114,6 +128,15 @@ export function checkView(value: unknown, path: string): asserts value is View {
       hint: `The shape [${shape.join(', ')}] reaches outside the data.`,
     });
   }
+}
+
+function checkShape(shape: unknown, path: string): void {
+  const hint = 'Write [rows, columns] or [frames, rows, columns].';
+  if (!Array.isArray(shape)) {
+    throw new MeasurementError('wrong-type', { path, expected: 'a shape', received: shape, hint });
+  }
+  if (shape.every((extent) => Number.isInteger(extent) && extent >= 0)) return;
+  throw new MeasurementError('wrong-shape', { path, expected: 'whole extents ≥ 0', received: shape, hint });
 }
 
 /** Whether two shapes are the same. */
