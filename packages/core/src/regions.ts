@@ -140,8 +140,11 @@ function insidePolygon(points: readonly Place[], row: number, column: number): b
   points.forEach((b, i) => {
     const a = points[(i + points.length - 1) % points.length]!;
     if (a.row > row === b.row > row) return;
-    const crossing = a.column + ((row - a.row) / (b.row - a.row)) * (b.column - a.column);
-    if (column < crossing) inside = !inside;
+    // From the upper end whichever way the edge is walked: two polygons that share it must round alike.
+    const [top, bottom] = a.row < b.row ? [a, b] : [b, a];
+    const left =
+      (column - top.column) * (bottom.row - top.row) < (row - top.row) * (bottom.column - top.column);
+    if (left) inside = !inside;
   });
   return inside;
 }
@@ -205,19 +208,23 @@ export function forEachPixel(
   shape: readonly [rows: number, columns: number],
   visit: (row: number, column: number) => void,
 ): void {
-  if (region.kind === 'mask' && !sameShape(region.mask.shape, shape)) {
-    throw new MeasurementError('wrong-shape', {
-      path: 'region.mask',
-      expected: `the shape of the frame, [${shape.join(', ')}]`,
-      received: region.mask.shape,
-    });
-  }
+  checkMaskFits(region, shape, 'region');
   const { rows, columns } = regionBounds(region, shape);
   for (let row = rows[0]; row <= rows[1]; row++) {
     for (let column = columns[0]; column <= columns[1]; column++) {
       if (contains(region, row, column)) visit(row, column);
     }
   }
+}
+
+/** Throws where a mask has another shape than the frame. */
+export function checkMaskFits(region: Region, shape: readonly number[], path: string): void {
+  if (region.kind !== 'mask' || sameShape(region.mask.shape, shape)) return;
+  throw new MeasurementError('wrong-shape', {
+    path: `${path}.mask`,
+    expected: `the shape of the frame, [${shape.join(', ')}]`,
+    received: region.mask.shape,
+  });
 }
 
 /**
@@ -231,6 +238,7 @@ export function regionMask(
   region: Region,
   shape: readonly [rows: number, columns: number],
 ): View<Uint8Array> {
+  checkPlane(shape);
   const mask = view(new Uint8Array(shape[0] * shape[1]), shape);
   forEachPixel(checkedRegion(region), shape, (row, column) => {
     mask.data[row * shape[1] + column] = 1;
@@ -253,14 +261,36 @@ export function mapFromRegions(
   background: number,
   values: readonly { readonly region: Region; readonly value: number }[],
 ): View<Float64Array> {
+  checkPlane(shape);
   const map = view(new Float64Array(shape[0] * shape[1]).fill(finiteNumber(background, 'background')), shape);
-  values.forEach(({ region, value }, i) => {
+  if (!Array.isArray(values)) {
+    throw new MeasurementError('wrong-type', {
+      path: 'values',
+      expected: 'an array of { region, value }',
+      received: values,
+    });
+  }
+  values.forEach((given: unknown, i) => {
+    const { region, value } = plainObject(given, `values[${i}]`, ['region', 'value']) as {
+      region: Region;
+      value: number;
+    };
     finiteNumber(value, `values[${i}].value`);
     forEachPixel(checkedRegion(region, `values[${i}].region`), shape, (row, column) => {
       map.data[row * shape[1] + column] = value;
     });
   });
   return map;
+}
+
+function checkPlane(shape: unknown): void {
+  const whole = (extent: unknown): boolean => Number.isInteger(extent) && (extent as number) >= 0;
+  if (Array.isArray(shape) && shape.length === 2 && shape.every(whole)) return;
+  throw new MeasurementError('wrong-shape', {
+    path: 'shape',
+    expected: '[rows, columns], whole numbers ≥ 0',
+    received: shape,
+  });
 }
 
 function checkPlace(value: unknown, path: string, check: (value: unknown, path: string) => number): void {
