@@ -12,9 +12,10 @@ import {
   summary,
   surfaceFrameOf,
 } from './frame.js';
+import { frameView } from './frame-io.js';
 import type { MeasurementModel } from './measurement.js';
 import type { Recorrection } from './recorrection.js';
-import { checkedRegion, forEachPixel, type Region, regionBounds } from './regions.js';
+import { checkedRegion, checkMaskFits, forEachPixel, type Region, regionBounds } from './regions.js';
 import { forEachRow, isView, type View } from './view.js';
 
 /** A region and the model that holds in it. */
@@ -38,8 +39,16 @@ export function surfaceFrameByArea<Model extends MeasurementModel | Recorrection
   areas: readonly Area<Model>[],
   out?: FrameOutput,
 ): SurfaceFrame {
-  const input = isView(frame) ? frame : frame.array;
+  checkModel(model, 'model');
+  const input = frameView(frame, model.reads);
   const shape = input.shape;
+  if (!Array.isArray(areas)) {
+    throw new MeasurementError('wrong-type', {
+      path: 'areas',
+      expected: 'an array of { region, model }',
+      received: areas,
+    });
+  }
   if (areas.length > 0 && shape.length < 2) {
     throw new MeasurementError('wrong-shape', {
       path: 'frame',
@@ -48,8 +57,10 @@ export function surfaceFrameByArea<Model extends MeasurementModel | Recorrection
     });
   }
   const plane = shape.slice(-2) as [number, number];
-  // Areas first: the output may be the input.
-  const parts = areas.map(({ region, model: own }, i) => {
+  // Areas first: the output may be the input, and nothing is written before everything is checked.
+  const parts = areas.map((area: Area<Model>, i) => {
+    const { region, model: own } = Object(area) as Area<Model>;
+    checkModel(own, `areas[${i}].model`);
     if (own.reads !== model.reads) {
       throw new MeasurementError('wrong-quantity', {
         path: `areas[${i}].model`,
@@ -57,7 +68,8 @@ export function surfaceFrameByArea<Model extends MeasurementModel | Recorrection
         received: own.reads,
       });
     }
-    const { rows, columns } = regionBounds(checkedRegion(region, `areas[${i}].region`), plane);
+    checkMaskFits(checkedRegion(region, `areas[${i}].region`), plane, `areas[${i}].region`);
+    const { rows, columns } = regionBounds(region, plane);
     const box: Box = own.needsPixel
       ? { row: 0, column: 0, height: plane[0], width: plane[1] }
       : {
@@ -74,6 +86,16 @@ export function surfaceFrameByArea<Model extends MeasurementModel | Recorrection
   for (const part of parts) if (part) paste(part.region, part.box, part.frame, result, plane);
   const counted = recount(result.flags);
   return { ...result, ...counted, cautions: areaCautions(model, areas, counted.counts.saturated) };
+}
+
+function checkModel(value: unknown, path: string): void {
+  if (typeof value === 'object' && value !== null && 'engine' in value && 'surfaceFrame' in value) return;
+  throw new MeasurementError('wrong-type', {
+    path,
+    expected: 'a model',
+    received: value,
+    hint: 'Write measurementModel(conditions) or recorrection(recorded, actual).',
+  });
 }
 
 /** Cautions of the whole and of every area, each once. */

@@ -1,6 +1,7 @@
 /**
  * What goes into a frame call and what comes out of it: checks of the input, and the output views.
  */
+import type { Band } from './band.js';
 import { plainObject } from './check.js';
 import { MeasurementError } from './errors.js';
 import { refuseQuantity } from './model.js';
@@ -55,6 +56,17 @@ export function refuseOtherUnits(input: View, path: string): void {
       highest < lowestTemperature
         ? 'They look like degrees Celsius: add 273.15 first, or read the file with { unit: "degC" }.'
         : 'They look like counts or scaled numbers: apply scale and offset first.',
+  });
+}
+
+/** A frame of radiances that states a unit must state the band's: per micrometre is not in-band. */
+export function refuseOtherRadiance(frame: unknown, { radianceUnit }: Band): void {
+  const { unit } = frame as { unit?: unknown };
+  if (unit === undefined || unit === radianceUnit) return;
+  throw new MeasurementError('wrong-quantity', {
+    path: 'frame.unit',
+    expected: `the unit of the band's radiance, '${radianceUnit}'`,
+    received: unit,
   });
 }
 

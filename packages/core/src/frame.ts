@@ -6,12 +6,12 @@
  * surroundings), the pixel goes the exact way. |result − exact| ≤ 0.1 mK + 1 float32 ulp, −40…2000 °C; asserted
  * in test/frame.test.ts against the spot.
  */
-import type { Band } from './band.js';
+import { type Band, isBand } from './band.js';
 import { type Caution, conditionCautions, saturatedCaution } from './cautions.js';
 import type { Conditions } from './conditions.js';
 import { MeasurementError } from './errors.js';
 import { equationAt, hasMaps } from './evaluation.js';
-import { detached, frameView, outputOf, refuseOtherUnits } from './frame-io.js';
+import { detached, frameView, outputOf, refuseOtherRadiance, refuseOtherUnits } from './frame-io.js';
 import {
   type Affine,
   compose,
@@ -345,10 +345,20 @@ export interface ApparentFrame extends Omit<SurfaceFrame, 'quantity' | 'cautions
  * @param band - The band the radiances are in.
  * @param out - As for `surfaceFrame`.
  * @returns float32 temperature and uint8 flags of the input's shape; `no-solution` for a radiance ≤ 0.
- * @throws {MeasurementError} `wrong-type`, `wrong-shape`, `already-corrected`, `wrong-quantity`.
+ * @throws {MeasurementError} `wrong-type`, `wrong-shape`, `already-corrected`; `wrong-quantity`, also when the frame
+ *   states another unit than the band's.
  */
 export function apparentFrame(frame: FrameInput, band: Band, out?: FrameOutput): ApparentFrame {
+  if (!isBand(band)) {
+    throw new MeasurementError('wrong-type', {
+      path: 'band',
+      expected: 'the band the radiances are in',
+      received: band,
+      hint: 'Write topHatBand(8, 14).',
+    });
+  }
   const input = frameView(frame, 'band radiance');
+  refuseOtherRadiance(frame, band);
   const { temperature, flags } = outputOf(out, input.shape);
   const { from, to } = band.range;
   const lowest = band.exact.radiance(from);
