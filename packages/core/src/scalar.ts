@@ -43,6 +43,13 @@ export function scalar<T extends Scalar>(
 
 /** Position of a pixel in a map. */
 export function mapIndex(map: View, pixel: Pixel, path: string): number {
+  if (typeof pixel !== 'object' || pixel === null) {
+    throw new MeasurementError('wrong-type', {
+      path: 'pixel',
+      expected: 'a pixel { row, column }',
+      received: pixel,
+    });
+  }
   const place = [pixel.frame, pixel.row, pixel.column].slice(map.shape.length === 2 ? 1 : 0);
   let index = map.offset;
   for (let axis = 0; axis < map.shape.length; axis++) {
