@@ -24,7 +24,10 @@ export interface Samples {
   readonly in: 'wavelength' | 'wavenumber';
 }
 
-/** Random samples, in µm or in cm⁻¹. */
+/**
+ * Random samples, in µm or in cm⁻¹, at least 0.1 nm apart. Of samples much closer the rounding of the wavelength
+ * itself, 2e-15 µm, makes a noticeable share: at 5e-11 µm two ways to compute the same line differ by 1e-5 of it.
+ */
 export const samples: fc.Arbitrary<Samples> = fc
   .tuple(
     limits,
@@ -44,9 +47,12 @@ export const samples: fc.Arbitrary<Samples> = fc
   .map(([[from, to], inner, kind]) => {
     const ends = kind === 'wavelength' ? [from, to] : [1e4 / to, 1e4 / from];
     const [first, last] = ends as [number, number];
-    const inside = [...new Set(inner.map(([share]) => first + share * (last - first)))]
-      .filter((x) => x > first && x < last)
-      .sort((a, b) => a - b);
+    const inside: number[] = [];
+    for (const x of inner.map(([share]) => first + share * (last - first)).sort((a, b) => a - b)) {
+      // 0.1 nm, in the abscissa at hand; see the note at `samples`.
+      const apart = kind === 'wavelength' ? 1e-4 : x * x * 1e-8;
+      if (x - (inside.at(-1) ?? first) > apart && last - x > apart) inside.push(x);
+    }
     const values = inside.map((_, i) => inner[i]![1]);
     return { abscissa: [first, ...inside, last], responsivity: [0.5, ...values, 0.25], in: kind };
   });
