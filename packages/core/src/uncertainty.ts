@@ -101,7 +101,8 @@ const halfWidthDivisor: Readonly<Record<Distribution, number>> = {
 /**
  * Standard uncertainty of an entry.
  *
- * @throws {MeasurementError} `wrong-type`, `not-finite`, `unknown-key`; `out-of-range` for a negative one.
+ * @throws {MeasurementError} `wrong-type`, `not-finite`, `unknown-key`; `out-of-range` for a negative one;
+ *   `missing-input`, `conflicting-inputs` when it is not stated in exactly one way.
  */
 export function standardUncertaintyOf(entry: unknown, path: string): number {
   if (typeof entry === 'number') return notNegative(entry, path);
@@ -117,6 +118,17 @@ export function standardUncertaintyOf(entry: unknown, path: string): number {
     throw new MeasurementError(stated.length === 0 ? 'missing-input' : 'conflicting-inputs', {
       path,
       expected: 'exactly one of standard, halfWidth and expanded',
+      received: entry,
+    });
+  }
+  for (const [key, partner] of [
+    ['distribution', 'halfWidth'],
+    ['coverageFactor', 'expanded'],
+  ] as const) {
+    if (given[key] === undefined || stated[0] === partner) continue;
+    throw new MeasurementError('conflicting-inputs', {
+      path: `${path}.${key}`,
+      expected: `${key} only beside ${partner}`,
       received: entry,
     });
   }
