@@ -42,7 +42,7 @@ function brute<Model extends MeasurementModel | Recorrection>(
 ): (index: readonly number[]) => Model {
   const masks = areas.map((area) => regionMask(area.region, plane));
   return (index) => {
-    const last = masks.findLastIndex((mask) => element(mask, index.slice(-2)) === 1);
+    const last = masks.map((mask) => element(mask, index.slice(-2))).lastIndexOf(1);
     return last < 0 ? whole : areas[last]!.model;
   };
 }
