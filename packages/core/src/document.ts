@@ -5,7 +5,12 @@
  * subpath; writing one needs no schema and is here.
  */
 
-import type { Conditions, InstrumentAccuracy, RecordedConditions } from './conditions.js';
+import {
+  type Conditions,
+  checkedConditions,
+  type InstrumentAccuracy,
+  type RecordedConditions,
+} from './conditions.js';
 import { type Curve, isCurve } from './curve.js';
 import type { BandDescriptor } from './descriptor.js';
 import type { Interval, Layer } from './layer.js';
@@ -97,7 +102,7 @@ export function compact<T extends object>(record: T): { [Key in keyof T]: Exclud
 /**
  * Conditions as plain data, maps replaced by their value at a pixel.
  *
- * @throws {MeasurementError} `needs-pixel` where an input is a map and no pixel is given.
+ * @throws {MeasurementError} as `measurementModel`; `needs-pixel` where an input is a map and no pixel is given.
  */
 export function conditionsDocument(conditions: Conditions, pixel?: Pixel): ConditionsDocument {
   const { band, surface, instrument } = conditions;
@@ -117,6 +122,10 @@ export function conditionsDocument(conditions: Conditions, pixel?: Pixel): Condi
       backgroundApparentTemperature: kelvinOf(
         at(surface.backgroundApparentTemperature, 'surface.backgroundApparentTemperature'),
       ),
+  return documentOf(checkedConditions(conditions), pixel);
+}
+
+function documentOf(conditions: Conditions, pixel: Pixel | undefined): ConditionsDocument {
     },
     viewAngle: conditions.viewAngle,
     reflectedMeasuredAt: conditions.reflectedMeasuredAt,
@@ -130,7 +139,7 @@ export function recordedDocument(
   recorded: Conditions & Pick<RecordedConditions, 'resolution'>,
   pixel?: Pixel,
 ): RecordedDocument {
-  const document = conditionsDocument(recorded, pixel);
+  const document = documentOf(recorded, pixel);
   const { emissivity, reflectedApparentTemperature, path, instrument } = document;
   const { resolution } = recorded;
   return compact({

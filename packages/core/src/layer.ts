@@ -6,7 +6,7 @@
  * one path share absorbers. A gray layer's answer is a constant. `measurement` sees only this interface.
  */
 import { notNegative, plainObject, ratio, temperature } from './check.js';
-import { type Curve, isCurve, spectralFunction } from './curve.js';
+import { type Curve, isCurve, plainAbscissa, spectralFunction } from './curve.js';
 import { MeasurementError } from './errors.js';
 import { type Scalar, scalar, type TemperatureScalar } from './scalar.js';
 
@@ -143,7 +143,7 @@ export function ratioOrCurve(value: unknown, path: string, lowest: 'above 0' | '
   if (value === undefined) throw new MeasurementError('missing-input', { path, expected: 'a ratio of 0…1' });
   if (isCurve(value)) {
     spectralFunction(value, path);
-    return value;
+    return Object.freeze({ ...plainAbscissa(value), value: [...value.value] });
   }
   return scalar<Scalar>(value, path, (number, at) => ratio(number, at, lowest));
 }
