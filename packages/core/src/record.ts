@@ -21,7 +21,7 @@ import type {
   TemperatureDocument,
 } from './document.js';
 import { compact } from './document.js';
-import { MeasurementError, within } from './errors.js';
+import { describe, MeasurementError, within } from './errors.js';
 import { air, infraredWindow, type Layer, layer } from './layer.js';
 import { type MeasurementModel, measurementModel } from './measurement.js';
 import { type Recorrection, recorrection } from './recorrection.js';
@@ -62,7 +62,7 @@ export interface DescribedConditions {
  *   `out-of-range` with the path of what is at fault; whatever the described conditions throw.
  */
 export function readConditionsDocument(document: unknown): DescribedConditions {
-  refuseNewer(document, 'graybody-conditions');
+  refuseOther(document, 'graybody-conditions');
   const checked = checkedBy(conditionsSchema, document) as unknown as ConditionsDocument;
   const { areas = [], recorded, uncertainties } = checked;
   const conditions = conditionsOf(checked);
@@ -112,7 +112,7 @@ export function describedModels({ conditions, areas, recorded }: DescribedCondit
  * @throws {MeasurementError} as {@link readConditionsDocument}.
  */
 export function recompute(record: unknown): MeasurementResult {
-  refuseNewer(record, 'graybody-result');
+  refuseOther(record, 'graybody-result');
   const checked = checkedBy(resultSchema, record) as unknown as ResultRecord;
   const { reading, uncertainties } = checked;
   const document = compact({ ...checked.conditions, recorded: checked.recorded });
@@ -217,8 +217,12 @@ function kelvinOf(document: TemperatureDocument): AnyKelvin {
   return 'fahrenheit' in document ? fahrenheit(document.fahrenheit) : kelvin(document.kelvin);
 }
 
-function refuseNewer(document: unknown, format: string): void {
+function refuseOther(document: unknown, format: string): void {
   const { format: given, version } = Object(document) as { format?: unknown; version?: unknown };
+  // Said first: of a document of another format every key would be at fault.
+  if (typeof given === 'string' && given !== format) {
+    throw new MeasurementError('out-of-range', { path: 'format', expected: `'${format}'`, received: given });
+  }
   if (given === format && typeof version === 'number' && version > 1) {
     throw new MeasurementError('wrong-version', {
       path: 'version',
@@ -248,16 +252,24 @@ function deepest(issues: readonly z.core.$ZodIssue[]): z.core.$ZodIssue {
 function leavesOf(issue: z.core.$ZodIssue): z.core.$ZodIssue[] {
   if (issue.code !== 'invalid_union') return [issue];
   const isOfKind = (branch: readonly z.core.$ZodIssue[]): boolean =>
-    !branch.some(({ code, path }) =>
-      path.length === 0
-        ? code === 'invalid_type'
-        : code === 'invalid_value' && (path.at(-1) === 'kind' || path.at(-1) === 'form'),
+    !branch.some((inner) =>
+      inner.path.length > 0
+        ? inner.code === 'invalid_value' && (inner.path.at(-1) === 'kind' || inner.path.at(-1) === 'form')
+        : inner.code === 'invalid_type' || (inner.code === 'invalid_union' && !inner.errors.some(isOfKind)),
     );
   const meant = issue.errors.filter(isOfKind);
   const fewest = Math.min(...meant.map((branch) => branch.length));
   const branch = meant.find(({ length }) => length === fewest);
   if (branch === undefined) return [issue];
   return branch.map((inner) => ({ ...inner, path: [...issue.path, ...inner.path] })).flatMap(leavesOf);
+}
+
+/** What was expected, in our words where the schema leaves them to zod. */
+function expectedBy({ message }: z.core.$ZodIssue): string {
+  const own = /^Invalid (?:input|option): expected ([^,]+)/.exec(message)?.[1];
+  if (own === undefined) return message;
+  const words: Readonly<Record<string, string>> = { object: 'an object', array: 'a list', string: 'a text' };
+  return words[own] ?? own.replaceAll('"', "'").replaceAll('|', ', ');
 }
 
 function errorOf(issue: z.core.$ZodIssue, document: unknown): MeasurementError {
@@ -279,14 +291,18 @@ function errorOf(issue: z.core.$ZodIssue, document: unknown): MeasurementError {
       ...nearest(key, documentKeys()),
     });
   }
-  if (received === undefined) return new MeasurementError('missing-input', { path, expected: issue.message });
+  const expected = expectedBy(issue);
+  if (received === undefined) return new MeasurementError('missing-input', { path, expected });
   const notAnObject = issue.code === 'invalid_union' && typeof received !== 'object';
   const code = issue.code === 'invalid_type' || notAnObject ? 'wrong-type' : 'out-of-range';
   const percent = typeof received === 'number' && issue.code === 'too_big' && received > 1 && received <= 100;
+  const { kind } = Object(received) as { kind?: unknown };
+  const ofKind = issue.code === 'invalid_union' && kind !== undefined;
   return new MeasurementError(code, {
     path,
-    expected: issue.message,
+    expected,
     received,
     ...(percent ? { hint: `Write ${received / 100} for ${received} %.` } : {}),
+    ...(ofKind ? { hint: `The kind given is ${describe(kind)}.` } : {}),
   });
 }
