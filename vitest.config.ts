@@ -7,6 +7,7 @@ export default defineConfig({
   resolve: {
     alias: [
       { find: /^@graybody\/core$/, replacement: source('packages/core/src/index.ts') },
+      { find: /^@graybody\/core\/atmosphere$/, replacement: source('packages/core/src/atmosphere.ts') },
       { find: /^@graybody\/core\/record$/, replacement: source('packages/core/src/record.ts') },
       { find: /^@graybody\/arrays$/, replacement: source('packages/arrays/src/index.ts') },
     ],
@@ -14,7 +15,11 @@ export default defineConfig({
   test: {
     include: ['packages/*/test/**/*.test.ts', 'test/**/*.test.ts'],
     testTimeout: 30_000,
-    typecheck: { enabled: true, include: ['packages/*/test/**/*.test-d.ts'], tsconfig: 'packages/core/test/tsconfig.json' },
+    typecheck: {
+      enabled: true,
+      include: ['packages/*/test/**/*.test-d.ts'],
+      tsconfig: 'packages/core/test/tsconfig.json',
+    },
     coverage: {
       provider: 'v8',
       include: ['packages/core/src/**', 'packages/arrays/src/**'],

@@ -21,21 +21,22 @@ function importsOf(path: string): string[] {
 
 /** Levels of core, lowest first: a file imports from its own level or a lower one. */
 const coreLevels: readonly (readonly string[])[] = [
-  ['errors', 'version', 'quantity', 'constants', 'descriptor'],
+  ['errors', 'version', 'quantity', 'constants', 'descriptor', 'humid-air-data'],
   ['units', 'view'],
   ['check'],
   ['planck', 'quadrature', 'curve', 'scalar', 'regions'],
-  ['table', 'kernel'],
+  ['table', 'kernel', 'humidity'],
   ['band'],
   ['layer'],
   ['conditions', 'measurement-equation'],
   ['evaluation'],
   ['sensitivity'],
   ['model'],
-  ['cautions', 'uncertainty', 'frame-io', 'document'],
+  ['cautions', 'uncertainty', 'frame-io', 'document', 'propagation'],
+  ['humid-air', 'atmosphere'],
   ['frame'],
   ['measurement', 'recorrection'],
-  ['areas', 'result'],
+  ['areas', 'result', 'procedures'],
   ['schema', 'record', 'index'],
 ];
 

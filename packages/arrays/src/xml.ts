@@ -150,7 +150,7 @@ function elementOf(node: Node, above: string, depth: number): Element {
   const name = Object.keys(node).find((key) => key !== ':@')!;
   const place = above === '' ? name : `${above}/${name}`;
   if (depth > deepest) throw malformed(place, `at most ${deepest} levels`, 'more');
-  if (!/^[a-z][A-Za-z0-9]*$/.test(name)) throw malformed(place, 'an element of the schema', `<${name}>`);
+  if (!/^[a-z][A-Za-z0-9-]*$/.test(name)) throw malformed(place, 'an element of the schema', `<${name}>`);
   const content = node[name] as readonly Node[];
   const attributes = (node[':@'] ?? {}) as Readonly<Record<string, string>>;
   const inner = content.filter((child) => !('#text' in child));

@@ -17,6 +17,10 @@ export const cautionCodes = [
   'inter-reflection',
   'outside-proven-range',
   'recorded-rounded',
+  'narrow-band',
+  'low-contrast',
+  'replicates-scatter',
+  'above-one',
 ] as const;
 
 /** A code of {@link cautionCodes}. */
@@ -101,6 +105,9 @@ export function readingCautions(at: EngineAt, reading: AnyKelvin, surface: AnyKe
   }
   const ends = saturationOf(engine);
   if (ends && (reading <= ends.from || reading >= ends.to)) cautions.push(saturatedCaution('The reading is'));
+  for (const layer of engine.conditions.path ?? []) {
+    cautions.push(...(layer.inBand?.(engine.conditions.band, reading).cautions ?? []));
+  }
   const celsius = toCelsius(surface);
   if (celsius < -40 || celsius > 2000) {
     cautions.push({

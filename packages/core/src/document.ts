@@ -24,8 +24,25 @@ export type TemperatureDocument =
   | { readonly kelvin: number }
   | { readonly fahrenheit: number };
 
+/** Computed air as plain data; see `humidAir` of the `/atmosphere` subpath. */
+export interface HumidAirDocument {
+  readonly kind: 'humid-air';
+  readonly temperature: TemperatureDocument;
+  readonly relativeHumidity: number;
+  /** [m] */
+  readonly distance: number;
+  /** [Pa] */
+  readonly pressure?: number;
+  readonly carbonDioxide?: number;
+  /** [km] */
+  readonly visibility?: number;
+}
+
 /** A layer as plain data. */
-export interface LayerDocument {
+export type LayerDocument = GivenLayerDocument | HumidAirDocument;
+
+/** A layer whose transmittance is given, as plain data. */
+export interface GivenLayerDocument {
   readonly kind: Layer['kind'];
   readonly transmittance: number | Curve | Interval;
   readonly reflectance?: number | Curve | Interval;
@@ -105,6 +122,10 @@ export function compact<T extends object>(record: T): { [Key in keyof T]: Exclud
  * @throws {MeasurementError} as `measurementModel`; `needs-pixel` where an input is a map and no pixel is given.
  */
 export function conditionsDocument(conditions: Conditions, pixel?: Pixel): ConditionsDocument {
+  return documentOf(checkedConditions(conditions), pixel);
+}
+
+function documentOf(conditions: Conditions, pixel: Pixel | undefined): ConditionsDocument {
   const { band, surface, instrument } = conditions;
   const at = (value: Scalar, name: string): number => scalarAt(value, pixel, name);
   const { emissivity, reflectedApparentTemperature: reflected, reflectedRadiance: radiance } = conditions;
@@ -122,10 +143,6 @@ export function conditionsDocument(conditions: Conditions, pixel?: Pixel): Condi
       backgroundApparentTemperature: kelvinOf(
         at(surface.backgroundApparentTemperature, 'surface.backgroundApparentTemperature'),
       ),
-  return documentOf(checkedConditions(conditions), pixel);
-}
-
-function documentOf(conditions: Conditions, pixel: Pixel | undefined): ConditionsDocument {
     },
     viewAngle: conditions.viewAngle,
     reflectedMeasuredAt: conditions.reflectedMeasuredAt,
@@ -157,6 +174,7 @@ function layerDocument(
   at: (value: Scalar, name: string) => number,
   name: string,
 ): LayerDocument {
+  if (layer.document) return layer.document;
   const ratio = (key: 'transmittance' | 'reflectance', value: Scalar | Curve): number | Curve | Interval => {
     const halfWidth = layer.halfWidths[key];
     if (isCurve(value)) return value;

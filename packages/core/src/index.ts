@@ -39,6 +39,8 @@ export {
   type AreaConditionsDocument,
   type ConditionsDocument,
   conditionsDocument,
+  type GivenLayerDocument,
+  type HumidAirDocument,
   type InstrumentDocument,
   type LayerDocument,
   type RecordedDocument,
@@ -92,6 +94,18 @@ export {
   spectralRadianceSlope,
   spectralTemperature,
 } from './planck.js';
+export {
+  emissivityByContact,
+  emissivityByReference,
+  type Finding,
+  type RatioEstimate,
+  type Readings,
+  reflectedTemperatureByReflector,
+  reflectedTemperatureDirect,
+  type Setup,
+  transmittanceByPair,
+} from './procedures.js';
+export type { Estimate, Propagated } from './propagation.js';
 export { type Quantity, type QuantityUnit, quantities } from './quantity.js';
 export { type RecordedKelvin, type Recorrection, recorrection } from './recorrection.js';
 export {

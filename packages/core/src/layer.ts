@@ -5,10 +5,14 @@
  * A layer answers its transmittance given what lies between it and the instrument, because stretches of air on
  * one path share absorbers. A gray layer's answer is a constant. `measurement` sees only this interface.
  */
+import type { Band } from './band.js';
+import type { Caution } from './cautions.js';
 import { notNegative, plainObject, ratio, temperature } from './check.js';
 import { type Curve, isCurve, plainAbscissa, spectralFunction } from './curve.js';
+import type { LayerDocument } from './document.js';
 import { MeasurementError } from './errors.js';
 import { type Scalar, scalar, type TemperatureScalar } from './scalar.js';
+import type { AnyKelvin } from './units.js';
 
 /** A ratio known to lie between two limits: its middle is used, and its half-width enters the budget. */
 export interface Interval {
@@ -29,11 +33,26 @@ export interface Layer {
   readonly pathRadiance: Scalar | undefined;
   /** Half-width of an input given as an {@link Interval}, by its key. */
   readonly halfWidths: Readonly<Record<string, number>>;
+  /** The layer as plain data, where it is made from other inputs than a transmittance. */
+  readonly document?: LayerDocument;
+  /** Throws where the layer's model does not hold in a band. */
+  checkBand?(band: Band): void;
+  /** What the layer's model says of itself in a band, for a source of this temperature [K]. */
+  inBand?(band: Band, source: AnyKelvin): LayerInBand;
   /**
    * Transmittance of this layer, given the layers between it and the instrument.
    * @param nearer - Layers after this one, in path order.
    */
   transmittanceBehind(nearer: readonly Layer[]): Scalar | Curve;
+}
+
+/** How good a computed layer is in a band. */
+export interface LayerInBand {
+  /** Standard uncertainty of an input, by its key, and where it comes from. */
+  readonly uncertainties: Readonly<
+    Record<string, { readonly standardUncertainty: number; readonly origin: string }>
+  >;
+  readonly cautions: readonly Caution[];
 }
 
 /** What {@link air} takes. */

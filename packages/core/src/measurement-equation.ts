@@ -87,6 +87,7 @@ export function measurementEquation(conditions: Conditions): MeasurementEquation
   for (let k = path.length - 1; k >= 0; k--) {
     const layer = path[k]!;
     const name = `path[${k}]`;
+    layer.checkBand?.(band);
     const transmittance = layer.transmittanceBehind(path.slice(k + 1));
     if (layer.pathRadiance !== undefined && behind !== band)
       throw radianceBehindCurve(`${name}.pathRadiance`);

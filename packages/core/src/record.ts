@@ -16,6 +16,7 @@ import {
 import type {
   AreaConditionsDocument,
   ConditionsDocument,
+  HumidAirDocument,
   InstrumentDocument,
   LayerDocument,
   TemperatureDocument,
@@ -39,6 +40,16 @@ import { type AnyKelvin, celsius, fahrenheit, kelvin } from './units.js';
 export type { ConditionsDocument, TemperatureDocument } from './document.js';
 export { conditionsSchema, resultSchema } from './schema.js';
 
+/** Functions for layers whose data are not part of this subpath. */
+export interface LayerMakers {
+  /** `humidAir` of `@graybody/core/atmosphere`. */
+  readonly humidAir?: (input: {
+    readonly temperature: AnyKelvin;
+    readonly relativeHumidity: number;
+    readonly distance: number;
+  }) => Layer;
+}
+
 /** What a conditions document describes. */
 export interface DescribedConditions {
   readonly conditions: Conditions;
@@ -58,14 +69,15 @@ export interface DescribedConditions {
  * Reads a conditions document: checks it against the schema and makes what it describes.
  *
  * @param document - A parsed JSON value.
+ * @param makers - `{ humidAir }` of the `/atmosphere` subpath, for documents with computed air.
  * @throws {MeasurementError} `wrong-version` for a newer version; `unknown-key`, `missing-input`, `wrong-type`,
  *   `out-of-range` with the path of what is at fault; whatever the described conditions throw.
  */
-export function readConditionsDocument(document: unknown): DescribedConditions {
+export function readConditionsDocument(document: unknown, makers: LayerMakers = {}): DescribedConditions {
   refuseOther(document, 'graybody-conditions');
   const checked = checkedBy(conditionsSchema, document) as unknown as ConditionsDocument;
   const { areas = [], recorded, uncertainties } = checked;
-  const conditions = conditionsOf(checked);
+  const conditions = conditionsOf(checked, makers);
   return {
     conditions,
     uncertainties,
@@ -73,7 +85,7 @@ export function readConditionsDocument(document: unknown): DescribedConditions {
       within(`areas[${i}]`, () => ({
         name: area.name,
         region: checkedRegion(area.region),
-        conditions: within('conditions', () => conditionsOf(overridden(checked, area.conditions))),
+        conditions: within('conditions', () => conditionsOf(overridden(checked, area.conditions), makers)),
         uncertainties: areaUncertainties(uncertainties, area),
       })),
     ),
@@ -82,7 +94,7 @@ export function readConditionsDocument(document: unknown): DescribedConditions {
       (compact({
         emissivity: recorded.emissivity,
         reflectedApparentTemperature: kelvinOf(recorded.reflectedApparentTemperature),
-        path: recorded.path && layersOf(recorded.path, 'recorded.path'),
+        path: recorded.path && layersOf(recorded.path, 'recorded.path', makers),
         instrument: recorded.instrument && instrumentOf(recorded.instrument),
         resolution: recorded.resolution,
       }) as RecordedConditions),
@@ -111,12 +123,12 @@ export function describedModels({ conditions, areas, recorded }: DescribedCondit
  * @returns The result; its temperature equals the record's within 1e-9 K with the same version.
  * @throws {MeasurementError} as {@link readConditionsDocument}.
  */
-export function recompute(record: unknown): MeasurementResult {
+export function recompute(record: unknown, makers: LayerMakers = {}): MeasurementResult {
   refuseOther(record, 'graybody-result');
   const checked = checkedBy(resultSchema, record) as unknown as ResultRecord;
   const { reading, uncertainties } = checked;
   const document = compact({ ...checked.conditions, recorded: checked.recorded });
-  const { conditions, recorded } = readConditionsDocument(document);
+  const { conditions, recorded } = readConditionsDocument(document, makers);
   if (reading.quantity === 'apparent temperature') {
     return measurementResult(kelvin(reading.kelvin), conditions, uncertainties);
   }
@@ -161,7 +173,7 @@ function areaUncertainties(
   return { ...kept, ...uncertainties };
 }
 
-function conditionsOf(document: ConditionsDocument): Conditions {
+function conditionsOf(document: ConditionsDocument, makers: LayerMakers): Conditions {
   const { surface, reflectedApparentTemperature: reflected } = document;
   return checkedConditions(
     compact({
@@ -169,7 +181,7 @@ function conditionsOf(document: ConditionsDocument): Conditions {
       emissivity: document.emissivity,
       reflectedApparentTemperature: reflected && kelvinOf(reflected),
       reflectedRadiance: document.reflectedRadiance,
-      path: document.path && layersOf(document.path, 'path'),
+      path: document.path && layersOf(document.path, 'path', makers),
       surface: surface && {
         transmittance: surface.transmittance,
         backgroundApparentTemperature: kelvinOf(surface.backgroundApparentTemperature),
@@ -182,9 +194,10 @@ function conditionsOf(document: ConditionsDocument): Conditions {
   );
 }
 
-function layersOf(path: readonly LayerDocument[], name: string): Layer[] {
+function layersOf(path: readonly LayerDocument[], name: string, makers: LayerMakers): Layer[] {
   return path.map((document, k) =>
     layerWithin(`${name}[${k}]`, () => {
+      if (document.kind === 'humid-air') return computedAir(document, makers);
       const { kind, temperature, mirroredTemperature, ...rest } = document;
       const input = compact({
         ...rest,
@@ -198,9 +211,22 @@ function layersOf(path: readonly LayerDocument[], name: string): Layer[] {
   );
 }
 
+function computedAir(
+  { kind: _kind, temperature, ...rest }: HumidAirDocument,
+  { humidAir }: LayerMakers,
+): Layer {
+  if (humidAir) return humidAir({ temperature: kelvinOf(temperature), ...rest });
+  throw new MeasurementError('missing-input', {
+    path: 'kind',
+    expected: 'the function that makes computed air',
+    received: 'humid-air',
+    hint: "Import { humidAir } from '@graybody/core/atmosphere' and pass { humidAir } as second argument.",
+  });
+}
+
 /** A layer's own errors name the function that makes it; in a document the path says which layer it is. */
 function layerWithin(name: string, make: () => Layer): Layer {
-  return within(name, make, /^(air|infraredWindow|layer)\./);
+  return within(name, make, /^(air|humidAir|infraredWindow|layer)\./);
 }
 
 function instrumentOf(document: InstrumentDocument): Instrument {

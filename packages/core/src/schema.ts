@@ -71,13 +71,25 @@ const weighted = (inner: z.ZodType): z.ZodType =>
 // Three weightings deep: nothing recursive, so that a hostile document cannot nest without end.
 const band = weighted(weighted(weighted(plainBand)));
 
-const layer = z.strictObject({
+const humidAir = z.strictObject({
+  kind: z.literal('humid-air'),
+  temperature,
+  relativeHumidity: ratio,
+  distance: number().gte(0, 'a distance ≥ 0 m'),
+  pressure: number().optional(),
+  carbonDioxide: ratio.optional(),
+  visibility: number().optional(),
+});
+const givenLayer = z.strictObject({
   kind: z.enum(['air', 'window', 'layer'], { error: () => "'air', 'window' or 'layer'" }),
   transmittance: ratioCurveOrInterval,
   reflectance: ratioCurveOrInterval.optional(),
   temperature: temperature.optional(),
   mirroredTemperature: temperature.optional(),
   pathRadiance: number().gte(0, 'a radiance ≥ 0').optional(),
+});
+const layer = z.union([givenLayer, humidAir], {
+  error: () => "a layer of kind 'air', 'window', 'layer' or 'humid-air'",
 });
 const path = z.array(layer, 'a list of layers from target to instrument').readonly().optional();
 

@@ -246,6 +246,8 @@ function impliedUncertainties(
           origin: 'half-width of the interval given, rectangular',
         };
       }
+      const own = layer.inBand?.(conditions.band, reading).uncertainties ?? {};
+      for (const [key, entry] of Object.entries(own)) implied[`${prefix}path[${k}].${key}`] = entry;
     });
   };
   ofIntervals(engine.conditions, '');
