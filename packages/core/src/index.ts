@@ -94,15 +94,12 @@ export {
   spectralRadianceSlope,
   spectralTemperature,
 } from './planck.js';
+export type { Finding, RatioEstimate, Readings, Setup } from './procedure-support.js';
 export {
   emissivityByContact,
   emissivityByReference,
-  type Finding,
-  type RatioEstimate,
-  type Readings,
   reflectedTemperatureByReflector,
   reflectedTemperatureDirect,
-  type Setup,
   transmittanceByPair,
 } from './procedures.js';
 export type { Estimate, Propagated } from './propagation.js';
