@@ -18,6 +18,7 @@ import {
   toCelsius,
   type View,
 } from '@graybody/core';
+import { humidAir } from '@graybody/core/atmosphere';
 import { type DescribedConditions, describedModels, readConditionsDocument } from '@graybody/core/record';
 import {
   isArrayError,
@@ -119,7 +120,7 @@ function readConditions(text: string, path: string): DescribedConditions {
   } catch (error) {
     throw new UsageError(`${path}: neither JSON nor XML: ${(error as Error).message}`);
   }
-  return readConditionsDocument(document);
+  return readConditionsDocument(document, { humidAir });
 }
 
 function numberOf(text: string, option: string): number {

@@ -3,6 +3,7 @@
  */
 import { start } from 'node:repl';
 import * as core from '@graybody/core';
+import * as atmosphere from '@graybody/core/atmosphere';
 import * as record from '@graybody/core/record';
 import * as arrays from '../index.js';
 
@@ -25,4 +26,4 @@ if (process.stdout.isTTY) {
   );
 }
 const repl = start({ prompt: process.stdout.isTTY ? '> ' : '', ignoreUndefined: true });
-Object.assign(repl.context, core, record, arrays, { conditions });
+Object.assign(repl.context, core, atmosphere, record, arrays, { conditions });
