@@ -162,9 +162,10 @@ function withoutSpaces(text: string): string {
   return text.slice(0, end);
 }
 
-/** Whether a row is a header: some cell is neither a number nor a missing one. */
+/** Whether a row is a header: it has words, and nothing else that is no number. A damaged number is not a header. */
 function isWordRow(cells: readonly string[], dialect: Dialect): boolean {
-  return cells.some((cell) => numberOf(cell, dialect) === undefined);
+  const others = cells.filter((cell) => numberOf(cell, dialect) === undefined);
+  return others.length > 0 && others.every((cell) => /\p{L}/u.test(cell));
 }
 
 function gridOf(
