@@ -70,6 +70,7 @@ export {
   type Interval,
   infraredWindow,
   type Layer,
+  type LayerInBand,
   type LayerInput,
   layer,
   type WindowInput,
