@@ -5,7 +5,7 @@
  * temperature says its unit in an attribute. Entities are not needed and a DOCTYPE is refused. What comes out is the
  * same plain object the JSON document is, and goes through the same schema of @graybody/core/record.
  */
-import { type DescribedConditions, readConditionsDocument } from '@graybody/core/record';
+import { type DescribedConditions, type LayerMakers, readConditionsDocument } from '@graybody/core/record';
 import { XMLParser, XMLValidator } from 'fast-xml-parser';
 import { ArrayError } from './errors.js';
 
@@ -46,11 +46,16 @@ interface Element {
 /**
  * Reads conditions from an XML document.
  *
+ * @param makers - As for `readConditionsDocument`: `{ humidAir }` of `@graybody/core/atmosphere` for documents with
+ *   computed air.
  * @throws {ArrayError} `malformed`, `unsupported`, `limit-exceeded` for what is no sound document of the schema.
  * @throws {MeasurementError} what `readConditionsDocument` throws, with the path of what is at fault.
  */
-export function readConditionsXml(document: string | Uint8Array): DescribedConditions {
-  return readConditionsDocument(conditionsObjectFromXml(document));
+export function readConditionsXml(
+  document: string | Uint8Array,
+  makers: LayerMakers = {},
+): DescribedConditions {
+  return readConditionsDocument(conditionsObjectFromXml(document), makers);
 }
 
 /**

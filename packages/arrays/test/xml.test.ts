@@ -2,6 +2,7 @@ import { spawnSync } from 'node:child_process';
 import { writeFileSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { isMeasurementError } from '@graybody/core';
+import { humidAir } from '@graybody/core/atmosphere';
 import { readConditionsDocument } from '@graybody/core/record';
 import { describe, expect, it } from 'vitest';
 import { isArrayError } from '../src/errors.js';
@@ -20,10 +21,9 @@ describe('XML and JSON say the same', () => {
     const json = documents[name]!;
     const xml = xmlOf(json);
     expect(conditionsObjectFromXml(xml)).toEqual(json);
-    const fromXml = readConditionsXml(
-      new TextEncoder().encode(`\uFEFF<?xml version="1.0"?><!-- a note -->${xml}`),
-    );
-    const fromJson = readConditionsDocument(json);
+    const bytes = new TextEncoder().encode(`\uFEFF<?xml version="1.0"?><!-- a note -->${xml}`);
+    const fromXml = readConditionsXml(bytes, { humidAir });
+    const fromJson = readConditionsDocument(json, { humidAir });
     expect(JSON.stringify(fromXml)).toBe(JSON.stringify(fromJson));
   });
 

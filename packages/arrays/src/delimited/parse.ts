@@ -89,7 +89,7 @@ const dialects: readonly Dialect[] = [
   { delimiter: ' ', decimal: ',' },
 ];
 
-/** The dialect that reads the first rows as numbers. Rows of words are tried too, behind a header they are not. */
+/** The dialect that reads the first rows as numbers; where none does, the rows behind a header. */
 function dialectOf(rows: readonly Row[], { delimiter, decimal }: TableOptions, path: string): Dialect {
   if (delimiter !== undefined && delimiter === decimal) {
     throw new ArrayError('wrong-option', {
@@ -99,18 +99,20 @@ function dialectOf(rows: readonly Row[], { delimiter, decimal }: TableOptions, p
     });
   }
   if (delimiter !== undefined && decimal !== undefined) return { delimiter, decimal };
-  const sample = rows.length > 1 ? rows.slice(1, 33) : rows;
-  const readings = dialects
-    .filter(
-      (one) => (delimiter ?? one.delimiter) === one.delimiter && (decimal ?? one.decimal) === one.decimal,
-    )
-    .flatMap((dialect) => {
+  const candidates = dialects.filter(
+    (one) => (delimiter ?? one.delimiter) === one.delimiter && (decimal ?? one.decimal) === one.decimal,
+  );
+  const readingsOf = (sample: readonly Row[]): { dialect: Dialect; text: string; columns: number }[] =>
+    candidates.flatMap((dialect) => {
       const cells = sample.map((row) => cellsOf(row.text, dialect));
       const sound = cells.every((row) => row.every((cell) => numberOf(cell, dialect) !== undefined));
       const numbers = cells.some((row) => row.some((cell) => !missingTokens.has(cell.toLowerCase())));
       const text = cells.map((row) => row.map((cell) => numberOf(cell, dialect)).join()).join(';');
       return sound && numbers ? [{ dialect, text, columns: cells[0]!.length }] : [];
     });
+  const whole = readingsOf(rows.slice(0, 32));
+  const sample = whole.length > 0 || rows.length === 1 ? rows.slice(0, 32) : rows.slice(1, 33);
+  const readings = whole.length > 0 ? whole : readingsOf(sample);
   const [best, ...others] = readings.sort((a, b) => b.columns - a.columns);
   if (best === undefined) {
     throw new ArrayError('malformed', {
@@ -162,10 +164,15 @@ function withoutSpaces(text: string): string {
   return text.slice(0, end);
 }
 
-/** Whether a row is a header: it has words, and nothing else that is no number. A damaged number is not a header. */
+/** Whether a row is a header: words, none of which begins like a number, and no number. A damaged number is none. */
 function isWordRow(cells: readonly string[], dialect: Dialect): boolean {
-  const others = cells.filter((cell) => numberOf(cell, dialect) === undefined);
-  return others.length > 0 && others.every((cell) => /\p{L}/u.test(cell));
+  const words = cells.filter((cell) => !missingTokens.has(cell.toLowerCase()));
+  return (
+    words.length > 0 &&
+    words.every(
+      (cell) => numberOf(cell, dialect) === undefined && /\p{L}/u.test(cell) && !/^[\d+.,-]/.test(cell),
+    )
+  );
 }
 
 function gridOf(

@@ -160,6 +160,24 @@ export const documents: Record<string, Record<string, unknown>> = {
     emissivity: 1,
     reflectedApparentTemperature: { celsius: 20 },
   },
+  'computed air': {
+    format: 'graybody-conditions',
+    version: 1,
+    band: { kind: 'top-hat', from: 8, to: 12 },
+    emissivity: 0.9,
+    reflectedApparentTemperature: { celsius: 20 },
+    path: [
+      {
+        kind: 'humid-air',
+        temperature: { celsius: 18 },
+        relativeHumidity: 0.6,
+        distance: 40,
+        pressure: 101325,
+        carbonDioxide: 0.00042,
+        visibility: 20,
+      },
+    ],
+  },
   'one wavelength': {
     format: 'graybody-conditions',
     version: 1,
