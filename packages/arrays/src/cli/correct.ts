@@ -113,7 +113,7 @@ function readArguments(): ReturnType<typeof parseArgs<{ options: typeof options;
 }
 
 function readConditions(text: string, path: string): DescribedConditions {
-  if (text.trimStart().startsWith('<')) return readConditionsXml(text);
+  if (text.trimStart().startsWith('<')) return readConditionsXml(text, { humidAir });
   let document: unknown;
   try {
     document = JSON.parse(text);
