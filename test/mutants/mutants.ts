@@ -194,8 +194,8 @@ export const mutants: readonly Mutant[] = [
   {
     name: 'the photon factor left out of a band’s photon radiance',
     file: 'band.ts',
-    from: 'value * photonsPerJoule(rule.node[i]!)',
-    to: 'value * photonsPerJoule(1)',
+    from: '* photonsPerJoule(rule.node[i]!) *',
+    to: '* photonsPerJoule(1) *',
     killedBy: 'table of in-band radiance',
   },
   {

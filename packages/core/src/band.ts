@@ -17,7 +17,7 @@ import type {
 } from './descriptor.js';
 import { MeasurementError } from './errors.js';
 import { calibratedKernel, monochromaticKernel, quadratureKernel } from './kernel.js';
-import { photonsPerJoule } from './planck.js';
+import { photonsPerJoule, planck } from './planck.js';
 import { type Rule, wavelengthRule } from './quadrature.js';
 import { type RadianceKernel, tabulated } from './table.js';
 import { type AnyKelvin, highestTemperature, type Kelvin, lowestTemperature } from './units.js';
@@ -321,8 +321,11 @@ function finished(
           received: 'a calibrated band',
         });
       }
-      const weight = rule.weight.map((value, i) => value * photonsPerJoule(rule.node[i]!));
-      return quadratureKernel({ node: rule.node, weight }, range.from, range.to).radiance(kelvin);
+      let photons = 0;
+      for (let i = 0; i < rule.node.length; i++) {
+        photons += rule.weight[i]! * photonsPerJoule(rule.node[i]!) * planck(rule.node[i]!, kelvin);
+      }
+      return photons;
     },
     weightedBy: (curve) =>
       reweighted(band, spectralFunction(curve, 'curve'), {

@@ -3,8 +3,7 @@
  *
  * The limits are common practice of the trade, no source, unless said otherwise beside them.
  */
-import type { Conditions } from './conditions.js';
-import { type EngineAt, saturationOf, termsAt } from './model.js';
+import { type Engine, type EngineAt, saturationOf, termsAt } from './model.js';
 import { type AnyKelvin, toCelsius } from './units.js';
 
 /** Every code a {@link Caution} can carry. docs/ERRORS.md has a line on each. */
@@ -43,9 +42,10 @@ const steepAngle = 60;
 const interReflectionLimit = 0.2;
 
 /** Cautions that hold for the conditions, whatever the reading. */
-export function conditionCautions(conditions: Conditions, resolution?: number): Caution[] {
+export function conditionCautions({ conditions, recorded }: Engine): Caution[] {
   const cautions: Caution[] = [];
   const { emissivity, viewAngle, path = [], reflectedMeasuredAt, band } = conditions;
+  const resolution = recorded?.conditions.resolution;
   if (typeof emissivity === 'number' && emissivity < lowEmissivity) {
     cautions.push({
       code: 'low-emissivity',
@@ -92,8 +92,7 @@ export function conditionCautions(conditions: Conditions, resolution?: number): 
 /** Cautions for one reading. */
 export function readingCautions(at: EngineAt, reading: AnyKelvin, surface: AnyKelvin): Caution[] {
   const { engine } = at;
-  const recorded = engine.recorded?.conditions as (Conditions & { resolution?: number }) | undefined;
-  const cautions = conditionCautions(engine.conditions, recorded?.resolution);
+  const cautions = conditionCautions(engine);
   const reflected = termsAt(at, surface).find((term) => term.name === 'reflected surroundings');
   if (reflected && reflected.share > 0.5) {
     cautions.push({

@@ -143,11 +143,11 @@ export function checkedConditions(input: unknown): Conditions {
   return Object.freeze(checked);
 }
 
+/** Recorded settings, checked: conditions in the band of the actual ones, and the step of what was stored. */
+export type RecordedSettings = Conditions & Pick<RecordedConditions, 'resolution'>;
+
 /** Checks recorded settings against the band of the actual conditions. */
-export function checkedRecorded(
-  input: unknown,
-  band: Band,
-): Conditions & Pick<RecordedConditions, 'resolution'> {
+export function checkedRecorded(input: unknown, band: Band): RecordedSettings {
   const given = plainObject(input, 'recorded', recordedKeys) as Partial<RecordedConditions>;
   if (given.band !== undefined && !sameBand(given.band, band)) {
     throw new MeasurementError('wrong-band', {

@@ -9,7 +9,7 @@ import {
   type Conditions,
   checkedConditions,
   type InstrumentAccuracy,
-  type RecordedConditions,
+  type RecordedSettings,
 } from './conditions.js';
 import { type Curve, isCurve } from './curve.js';
 import type { BandDescriptor } from './descriptor.js';
@@ -152,10 +152,7 @@ function documentOf(conditions: Conditions, pixel: Pixel | undefined): Condition
 }
 
 /** Recorded settings as plain data. */
-export function recordedDocument(
-  recorded: Conditions & Pick<RecordedConditions, 'resolution'>,
-  pixel?: Pixel,
-): RecordedDocument {
+export function recordedDocument(recorded: RecordedSettings, pixel?: Pixel): RecordedDocument {
   const document = documentOf(recorded, pixel);
   const { emissivity, reflectedApparentTemperature, path, instrument } = document;
   const { resolution } = recorded;

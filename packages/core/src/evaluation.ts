@@ -26,20 +26,31 @@ export function hasMaps(equation: MeasurementEquation): boolean {
   return equation.inputs.some((input) => isView(input.value));
 }
 
+/** The input vector before any input: slot 0 holds 0, slot 1 holds 1. */
+export function startingVector({ slots }: MeasurementEquation): Float64Array {
+  const x = new Float64Array(slots);
+  x[1] = 1;
+  return x;
+}
+
+/** What x holds of an input: the radiance of a temperature, anything else as it is. */
+export function inputValue({ kind, band }: EquationInput, value: number): number {
+  return kind === 'temperature' ? band.exact.radiance(value) : value;
+}
+
 /**
  * Evaluates the inputs at a pixel, or without one where no input is a map.
  *
  * @throws {MeasurementError} `needs-pixel` for a map without a pixel; `not-finite`, `out-of-range` for a bad cell.
  */
 export function equationAt(equation: MeasurementEquation, pixel: Pixel | undefined): EquationAt {
-  const x = new Float64Array(equation.slots);
+  const x = startingVector(equation);
   const value = new Float64Array(equation.slots);
-  x[1] = 1;
   for (const input of equation.inputs) {
     if (input.kind === 'curve') continue;
     const number = checkedCell(input, scalarAt(input.value as Scalar, pixel, input.name));
     value[input.slot] = number;
-    x[input.slot] = input.kind === 'temperature' ? input.band.exact.radiance(number) : number;
+    x[input.slot] = inputValue(input, number);
   }
   const affine: Affine = { gain: 0, offset: 0 };
   compose(equation, x, affine);

@@ -8,9 +8,8 @@
  */
 import { type Band, isBand } from './band.js';
 import { type Caution, conditionCautions, saturatedCaution } from './cautions.js';
-import type { Conditions } from './conditions.js';
 import { MeasurementError } from './errors.js';
-import { equationAt, hasMaps } from './evaluation.js';
+import { inputValue, startingVector } from './evaluation.js';
 import { detached, frameView, outputOf, refuseOtherRadiance, refuseOtherUnits } from './frame-io.js';
 import {
   type Affine,
@@ -132,8 +131,7 @@ export function surfaceFrameOf(
 
 /** Cautions of the conditions, and of saturated pixels where there are some. */
 export function frameCautions(engine: Engine, saturated: number): readonly Caution[] {
-  const recorded = engine.recorded?.conditions as (Conditions & { resolution?: number }) | undefined;
-  const cautions = conditionCautions(engine.conditions, recorded?.resolution);
+  const cautions = conditionCautions(engine);
   if (saturated > 0) cautions.push(saturatedCaution(`${saturated} pixels are`));
   return Object.freeze(cautions);
 }
@@ -167,7 +165,7 @@ function surfaceKernel(engine: Engine, shape: readonly number[]): PixelKernel {
   const actual = startOf(equation);
   const settings = recorded
     ? startOf(recorded.equation)
-    : { x: new Float64Array(2), affine: { gain: 1, offset: 0 } };
+    : { x: new Float64Array(0), affine: { gain: 1, offset: 0 } };
   const maps = [
     ...mapsOf(equation, actual.x, shape),
     ...(recorded ? mapsOf(recorded.equation, settings.x, shape) : []),
@@ -194,7 +192,10 @@ function surfaceKernel(engine: Engine, shape: readonly number[]): PixelKernel {
     }
     compose(equation, actual.x, actual.affine);
     if (recorded) compose(recorded.equation, settings.x, settings.affine);
-    return slopes + actual.affine.offset * 0 + settings.affine.offset * 0;
+    // An offset is NaN where the cells contradict each other: ε + τ or τ + ρ above 1.
+    return Number.isFinite(actual.affine.offset) && Number.isFinite(settings.affine.offset)
+      ? slopes
+      : Number.NaN;
   };
 
   return {
@@ -222,20 +223,15 @@ function surfaceKernel(engine: Engine, shape: readonly number[]): PixelKernel {
   };
 }
 
-/** Input vector and affine map of an equation, with numbers in place and maps still open. */
+/** Input vector and affine map of an equation, with numbers in place; maps are put in pixel by pixel. */
 function startOf(equation: MeasurementEquation): { readonly x: Float64Array; readonly affine: Affine } {
-  if (!hasMaps(equation)) {
-    const { x, gain, offset } = equationAt(equation, undefined);
-    return { x, affine: { gain, offset } };
+  const x = startingVector(equation);
+  for (const input of equation.inputs) {
+    if (typeof input.value === 'number') x[input.slot] = inputValue(input, input.value);
   }
-  const numbers = equation.inputs.filter((input) => typeof input.value === 'number');
-  const x = new Float64Array(equation.slots);
-  x[1] = 1;
-  for (const input of numbers) {
-    const value = input.value as number;
-    x[input.slot] = input.kind === 'temperature' ? input.band.exact.radiance(value) : value;
-  }
-  return { x, affine: { gain: 0, offset: 0 } };
+  const affine: Affine = { gain: 0, offset: 0 };
+  compose(equation, x, affine);
+  return { x, affine };
 }
 
 function mapsOf(equation: MeasurementEquation, x: Float64Array, shape: readonly number[]): MapInput[] {

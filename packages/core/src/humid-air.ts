@@ -92,7 +92,18 @@ export function humidAir(input: HumidAirInput): HumidAir {
   const vapour = vapourPressure(humidity, temperature);
   const absorption = absorptionOf(temperature, vapour, pressure, carbonDioxide, distance, haze);
   const { temperature: _temperature, ...rest } = input;
-  const alone = (): Curve => stepCurve(transmittanceOf([absorption]));
+  // A budget and its cautions ask for the same band twice: the curve and the band it weights are kept.
+  let curve: Curve | undefined;
+  const alone = (): Curve => {
+    curve ??= stepCurve(transmittanceOf([absorption]));
+    return curve;
+  };
+  const weightedBands = new WeakMap<Band, Band>();
+  const through = (band: Band): Band => {
+    const weighted = weightedBands.get(band) ?? band.weightedBy(alone());
+    weightedBands.set(band, weighted);
+    return weighted;
+  };
   const layer: HumidAir = {
     kind: 'air',
     temperature,
@@ -109,14 +120,14 @@ export function humidAir(input: HumidAirInput): HumidAir {
     checkBand: (band) => refuseThickHaze(band, haze),
     inBand: (band, source) => inBand(band, layer.bandTransmittance(band, source), haze),
     spectralTransmittance: alone,
-    bandTransmittance: (band, source) => band.weightedBy(alone()).radiance(source) / band.radiance(source),
+    bandTransmittance: (band, source) => through(band).radiance(source) / band.radiance(source),
     transmittanceBehind(nearer) {
       const others = nearer.filter(isHumidAir).map((stretch) => stretch.absorption);
       const before = transmittanceOf(others);
-      const through = transmittanceOf([...others, absorption]);
+      const together = transmittanceOf([...others, absorption]);
       // Where the nearer air lets nothing through, what this stretch would do is not seen.
       return stepCurve(
-        through.map((value, bin) => (before[bin]! > 0 ? Math.min(1, value / before[bin]!) : 0)),
+        together.map((value, bin) => (before[bin]! > 0 ? Math.min(1, value / before[bin]!) : 0)),
       );
     },
   };

@@ -20,6 +20,7 @@ export type {
   Instrument,
   InstrumentAccuracy,
   RecordedConditions,
+  RecordedSettings,
   SurfaceTransmission,
 } from './conditions.js';
 export * from './constants.js';

@@ -13,10 +13,8 @@ import type { RadianceTerm } from './measurement-equation.js';
 import {
   checkedReading,
   type Engine,
-  type EngineAt,
-  engineAt,
   engineOf,
-  needsPixel,
+  placesOf,
   readingOf,
   sensitivitiesAt,
   surfaceOf,
@@ -141,16 +139,14 @@ export function apparentTemperature(
 }
 
 function modelOf(engine: Engine, fixed: Pixel | undefined): MeasurementModel {
-  const uniform = !needsPixel(engine) || fixed !== undefined ? engineAt(engine, fixed) : undefined;
-  const at = (pixel: Pixel | undefined): EngineAt =>
-    pixel === undefined && uniform ? uniform : engineAt(engine, pixel);
+  const { at, needsPixel } = placesOf(engine, fixed);
   return Object.freeze({
     reads: 'apparent temperature' as const,
     conditions: engine.conditions,
     band: engine.equation.band,
     targetBand: engine.equation.targetBand,
     inputs: Object.freeze(['apparent', ...engine.equation.inputs.map((input) => input.name)]),
-    needsPixel: uniform === undefined,
+    needsPixel,
     engine,
     get gain() {
       return at(undefined).actual.gain;

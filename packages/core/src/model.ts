@@ -4,7 +4,7 @@
  */
 
 import { temperature } from './check.js';
-import type { Conditions } from './conditions.js';
+import type { Conditions, RecordedSettings } from './conditions.js';
 import { MeasurementError } from './errors.js';
 import { type EquationAt, equationAt, hasMaps } from './evaluation.js';
 import {
@@ -29,7 +29,9 @@ export interface Engine {
   readonly reads: ReadingQuantity;
   readonly conditions: Conditions;
   readonly equation: MeasurementEquation;
-  readonly recorded: { readonly conditions: Conditions; readonly equation: MeasurementEquation } | undefined;
+  readonly recorded:
+    | { readonly conditions: RecordedSettings; readonly equation: MeasurementEquation }
+    | undefined;
 }
 
 /** An engine at one place, with numbers for every input. */
@@ -41,7 +43,7 @@ export interface EngineAt {
 }
 
 /** Compiles checked conditions. */
-export function engineOf(conditions: Conditions, recorded?: Conditions): Engine {
+export function engineOf(conditions: Conditions, recorded?: RecordedSettings): Engine {
   return {
     reads: recorded === undefined ? 'apparent temperature' : 'recorded temperature',
     conditions,
@@ -51,7 +53,7 @@ export function engineOf(conditions: Conditions, recorded?: Conditions): Engine 
 }
 
 /** Whether an engine needs a pixel to answer. */
-export function needsPixel(engine: Engine): boolean {
+function needsPixel(engine: Engine): boolean {
   return hasMaps(engine.equation) || (engine.recorded !== undefined && hasMaps(engine.recorded.equation));
 }
 
@@ -62,6 +64,18 @@ export function engineAt(engine: Engine, pixel: Pixel | undefined): EngineAt {
     pixel,
     actual: equationAt(engine.equation, pixel),
     recorded: engine.recorded && equationAt(engine.recorded.equation, pixel),
+  };
+}
+
+/** Puts numbers to every input, once where a model needs no pixel or is held to one. */
+export function placesOf(
+  engine: Engine,
+  fixed: Pixel | undefined,
+): { readonly needsPixel: boolean; readonly at: (pixel: Pixel | undefined) => EngineAt } {
+  const uniform = !needsPixel(engine) || fixed !== undefined ? engineAt(engine, fixed) : undefined;
+  return {
+    needsPixel: uniform === undefined,
+    at: (pixel) => (pixel === undefined && uniform ? uniform : engineAt(engine, pixel)),
   };
 }
 
@@ -101,12 +115,9 @@ export function readingOf(at: EngineAt, surface: AnyKelvin): number {
  */
 export function saturationOf(engine: Engine): { readonly from: number; readonly to: number } | undefined {
   const { recorded, conditions } = engine;
-  const resolution = (recorded?.conditions as { resolution?: number } | undefined)?.resolution ?? 0;
   // 1 mK: a float32 of the range's end may lie just inside it.
-  const inside = 1e-3 + resolution / 2;
-  const own = recorded
-    ? recorded.conditions.instrument?.measuringRange
-    : conditions.instrument?.measuringRange;
+  const inside = 1e-3 + (recorded?.conditions.resolution ?? 0) / 2;
+  const own = (recorded ?? engine).conditions.instrument?.measuringRange;
   if (own) return { from: own.from + inside, to: own.to - inside };
   const apparent = conditions.instrument?.measuringRange;
   if (!apparent || !recorded || hasMaps(recorded.equation)) return undefined;

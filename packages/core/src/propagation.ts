@@ -3,7 +3,7 @@
  *
  * Sensitivities are central differences, good to about 1e-7 relative for a smooth function. Inputs are independent.
  */
-import type { BudgetRow } from './uncertainty.js';
+import { type BudgetRow, combined } from './uncertainty.js';
 
 /** An estimate with its standard uncertainty, both in the unit of the quantity. */
 export interface Estimate {
@@ -39,19 +39,10 @@ export function propagate<Name extends string>(
       const shifted = (by: number): number => measure({ ...values, [name]: values[name] + by });
       const sensitivity =
         (8 * (shifted(step) - shifted(-step)) - (shifted(2 * step) - shifted(-2 * step))) / (12 * step);
-      const { standardUncertainty } = inputs[name];
-      return {
-        name,
-        standardUncertainty,
-        sensitivity,
-        contribution: Math.abs(sensitivity) * standardUncertainty,
-      };
+      return { name, standardUncertainty: inputs[name].standardUncertainty, sensitivity };
     });
-  const variance = parts.reduce((sum, { contribution }) => sum + contribution ** 2, 0);
-  const budget = parts
-    .map((part) => ({ ...part, share: variance > 0 ? part.contribution ** 2 / variance : 0 }))
-    .sort((a, b) => b.share - a.share);
-  return { value, standardUncertainty: Math.sqrt(variance), budget };
+  const { rows, standardUncertainty } = combined(parts);
+  return { value, standardUncertainty, budget: rows };
 }
 
 /** Mean and standard uncertainty of repeated readings (type A, JCGM 100:2008, 4.2): s/√n. */

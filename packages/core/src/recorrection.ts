@@ -9,15 +9,14 @@ import {
   checkedConditions,
   checkedRecorded,
   type RecordedConditions,
+  type RecordedSettings,
 } from './conditions.js';
 import { type FrameInput, type FrameOutput, type SurfaceFrame, surfaceFrameOf } from './frame.js';
 import {
   checkedReading,
   type Engine,
-  type EngineAt,
-  engineAt,
   engineOf,
-  needsPixel,
+  placesOf,
   readingOf,
   sensitivitiesAt,
   surfaceOf,
@@ -33,7 +32,7 @@ export type RecordedKelvin = Kelvin | Kelvin<'recorded temperature'>;
 export interface Recorrection {
   readonly reads: 'recorded temperature';
   readonly conditions: Conditions;
-  readonly recorded: Conditions & Pick<RecordedConditions, 'resolution'>;
+  readonly recorded: RecordedSettings;
   readonly band: Band;
   readonly targetBand: Band;
   /** Names of the inputs; those of the recorded settings begin with `recorded.` */
@@ -85,14 +84,8 @@ export function recorrection(recorded: RecordedConditions, actual: Conditions): 
   return recorrectionOf(engineOf(conditions, settings), settings, undefined);
 }
 
-function recorrectionOf(
-  engine: Engine,
-  settings: Recorrection['recorded'],
-  fixed: Pixel | undefined,
-): Recorrection {
-  const uniform = !needsPixel(engine) || fixed !== undefined ? engineAt(engine, fixed) : undefined;
-  const at = (pixel: Pixel | undefined): EngineAt =>
-    pixel === undefined && uniform ? uniform : engineAt(engine, pixel);
+function recorrectionOf(engine: Engine, settings: RecordedSettings, fixed: Pixel | undefined): Recorrection {
+  const { at, needsPixel } = placesOf(engine, fixed);
   const names = engine.equation.inputs.map((input) => input.name);
   const recordedNames = engine.recorded?.equation.inputs.map((input) => `recorded.${input.name}`) ?? [];
   return Object.freeze({
@@ -102,7 +95,7 @@ function recorrectionOf(
     band: engine.equation.band,
     targetBand: engine.equation.targetBand,
     inputs: Object.freeze(['recorded', ...recordedNames, ...names]),
-    needsPixel: uniform === undefined,
+    needsPixel,
     engine,
     surfaceTemperature: (recorded, pixel) => surfaceOf(at(pixel), checkedReading(recorded, engine.reads)),
     recordedTemperature: (surface, pixel) =>

@@ -72,9 +72,10 @@ function curveDerivative(
   const k = input.layer;
   const layer = path[k]!;
   const nearer = path.slice(k + 1);
-  const darkOffset = blackOffset(conditions, nearer, pixel);
   const emitted =
-    layer.temperature === undefined ? darkOffset : blackbodyBehind(kelvinOf(layer.temperature), nearer);
+    layer.temperature === undefined
+      ? blackOffset(conditions, nearer, pixel)
+      : blackbodyBehind(kelvinOf(layer.temperature), nearer);
   if (input.name.endsWith('.reflectance')) {
     return blackbodyBehind(kelvinOf(layer.mirroredTemperature), nearer) - emitted;
   }

@@ -206,30 +206,39 @@ export function budgetAt(
   const implied = impliedUncertainties(at, reading);
   const names = [...new Set([...Object.keys(given), ...Object.keys(implied)])];
   if (names.length === 0) return undefined;
-  const parts = names.map((name) => {
-    const own = given[name];
-    const standardUncertainty = own ?? implied[name]!.standardUncertainty;
-    const sensitivity = sensitivities[name]!;
-    const contribution = Math.abs(sensitivity) * standardUncertainty;
-    return {
-      name,
-      standardUncertainty,
-      sensitivity,
-      contribution,
-      ...(own === undefined ? { origin: implied[name]!.origin } : {}),
-    };
-  });
-  const variance = parts.reduce((sum, { contribution }) => sum + contribution ** 2, 0);
-  const rows = parts
-    .map((part) => ({ ...part, share: variance > 0 ? part.contribution ** 2 / variance : 0 }))
-    .sort((a, b) => b.share - a.share);
-  const standardUncertainty = Math.sqrt(variance);
+  const { rows, standardUncertainty } = combined(
+    names.map((name) => {
+      const own = given[name];
+      return {
+        name,
+        standardUncertainty: own ?? implied[name]!.standardUncertainty,
+        sensitivity: sensitivities[name]!,
+        ...(own === undefined ? { origin: implied[name]!.origin } : {}),
+      };
+    }),
+  );
   return {
     rows,
     standardUncertainty,
     coverageFactor,
     expandedUncertainty: coverageFactor * standardUncertainty,
   };
+}
+
+/** Contributions |c·u| of independent inputs, their shares of the variance, largest first, and u = √Σ(c·u)². */
+export function combined(inputs: readonly Omit<BudgetRow, 'contribution' | 'share'>[]): {
+  readonly rows: readonly BudgetRow[];
+  readonly standardUncertainty: number;
+} {
+  const parts = inputs.map((input) => ({
+    ...input,
+    contribution: Math.abs(input.sensitivity) * input.standardUncertainty,
+  }));
+  const variance = parts.reduce((sum, { contribution }) => sum + contribution ** 2, 0);
+  const rows = parts
+    .map((part) => ({ ...part, share: variance > 0 ? part.contribution ** 2 / variance : 0 }))
+    .sort((a, b) => b.share - a.share);
+  return { rows, standardUncertainty: Math.sqrt(variance) };
 }
 
 /** Uncertainties the conditions bring with them: intervals, the instrument's accuracy, rounding of recorded values. */
@@ -253,7 +262,7 @@ function impliedUncertainties(
   ofIntervals(engine.conditions, '');
   if (engine.recorded && recorded) {
     ofIntervals(engine.recorded.conditions, 'recorded.');
-    const { resolution } = engine.recorded.conditions as { resolution?: number };
+    const { resolution } = engine.recorded.conditions;
     if (resolution !== undefined) {
       implied.recorded = {
         standardUncertainty: resolution / 2 / halfWidthDivisor.rectangular,

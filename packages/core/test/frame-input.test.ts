@@ -10,13 +10,11 @@ import {
   topHatBand,
   view,
 } from '../src/index.js';
-import { element, flagName, flat, float32Ulp, indices, K, refused } from './support/measurement.js';
+import { element, flagName, flat, float32Ulp, indices, K, ramp, refused } from './support/measurement.js';
 
 const band = topHatBand(8, 14);
 const base: Conditions = { band, emissivity: 0.8, reflectedApparentTemperature: celsius(20) };
 const model = measurementModel(base);
-const ramp = (count: number, from = 280): number[] =>
-  Array.from({ length: count }, (_, i) => from + 1.25 * i);
 
 describe('what a frame holds', () => {
   const array = view(Float32Array.from(ramp(6, 300)), [2, 3]);

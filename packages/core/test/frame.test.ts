@@ -9,13 +9,11 @@ import {
   type View,
   view,
 } from '../src/index.js';
-import { flat, K, laidOut, refused, worstAgainstSpot } from './support/measurement.js';
+import { flat, K, laidOut, ramp, refused, worstAgainstSpot } from './support/measurement.js';
 
 const band = topHatBand(8, 14);
 const base: Conditions = { band, emissivity: 0.8, reflectedApparentTemperature: celsius(20) };
 const model = measurementModel(base);
-const ramp = (count: number, from = 280): number[] =>
-  Array.from({ length: count }, (_, i) => from + 1.25 * i);
 const expectSpot = (frame: View, result: { temperature: View; flags: View }, own = model): void => {
   expect(worstAgainstSpot(own, frame, result).worst).toBeLessThan(1e-4);
 };

@@ -9,25 +9,19 @@ import {
   measurementResult,
   type RecordedConditions,
   recorrectionResult,
-  topHatBand,
   type Uncertainties,
   view,
 } from '../src/index.js';
 import { recompute } from '../src/record.js';
-import { anyConditions, K, kelvinBetween, refused } from './support/measurement.js';
+import {
+  anyConditions,
+  paintedConditions as base,
+  K,
+  kelvinBetween,
+  paintedDocument as minimal,
+  refused,
+} from './support/measurement.js';
 
-const base: Conditions = {
-  band: topHatBand(8, 14),
-  emissivity: 0.86,
-  reflectedApparentTemperature: celsius(21),
-};
-const minimal = {
-  format: 'graybody-conditions',
-  version: 1,
-  band: { kind: 'top-hat', from: 8, to: 14 },
-  emissivity: 0.86,
-  reflectedApparentTemperature: { celsius: 21 },
-};
 const json = <T>(value: T): T => JSON.parse(JSON.stringify(value)) as T;
 
 describe('recompute', () => {

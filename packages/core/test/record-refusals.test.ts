@@ -1,14 +1,7 @@
 import { describe, it } from 'vitest';
 import { readConditionsDocument } from '../src/record.js';
-import { refused } from './support/measurement.js';
+import { paintedDocument as minimal, refused } from './support/measurement.js';
 
-const minimal = {
-  format: 'graybody-conditions',
-  version: 1,
-  band: { kind: 'top-hat', from: 8, to: 14 },
-  emissivity: 0.86,
-  reflectedApparentTemperature: { celsius: 21 },
-};
 const read = (changes: object) => readConditionsDocument({ ...minimal, ...changes });
 
 describe('a document at fault: the path, what was expected, what to write', () => {

@@ -1,28 +1,8 @@
 import { describe, expect, it } from 'vitest';
-import {
-  type Conditions,
-  celsius,
-  measurementModel,
-  measurementResult,
-  surfaceFrameByArea,
-  topHatBand,
-  view,
-} from '../src/index.js';
+import { celsius, measurementModel, measurementResult, surfaceFrameByArea, view } from '../src/index.js';
 import { describedModels, readConditionsDocument } from '../src/record.js';
-import { fixture } from './support/measurement.js';
+import { paintedConditions as base, fixture, paintedDocument as minimal } from './support/measurement.js';
 
-const base: Conditions = {
-  band: topHatBand(8, 14),
-  emissivity: 0.86,
-  reflectedApparentTemperature: celsius(21),
-};
-const minimal = {
-  format: 'graybody-conditions',
-  version: 1,
-  band: { kind: 'top-hat', from: 8, to: 14 },
-  emissivity: 0.86,
-  reflectedApparentTemperature: { celsius: 21 },
-};
 const read = (changes: object) => readConditionsDocument({ ...minimal, ...changes });
 
 describe('a conditions document', () => {

@@ -11,15 +11,9 @@ import {
   recorrectionResult,
   softwareVersion,
   toCelsius,
-  topHatBand,
 } from '../src/index.js';
-import { K, refused } from './support/measurement.js';
+import { paintedConditions as base, K, refused } from './support/measurement.js';
 
-const base: Conditions = {
-  band: topHatBand(8, 14),
-  emissivity: 0.86,
-  reflectedApparentTemperature: celsius(21),
-};
 const uncertainties = { apparent: 1, emissivity: 0.02, reflectedApparentTemperature: 2 };
 const result = measurementResult(celsius(62.4), base, uncertainties);
 

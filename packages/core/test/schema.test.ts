@@ -4,18 +4,11 @@ import { celsius, measurementResult, recorrectionResult, topHatBand } from '../s
 import { conditionsJsonSchema, conditionsSchema, resultJsonSchema, resultSchema } from '../src/record.js';
 import { documentKeys } from '../src/schema.js';
 import { violations } from './support/json-schema.js';
-import { fixture } from './support/measurement.js';
+import { fixture, paintedDocument as minimal } from './support/measurement.js';
 
 const scenes = readdirSync(new URL('../../../fixtures/ice-works/', import.meta.url), { withFileTypes: true })
   .filter((entry) => entry.isDirectory())
   .flatMap(({ name }) => [`ice-works/${name}/conditions.json`, `ice-works/${name}/recorded.json`]);
-const minimal = {
-  format: 'graybody-conditions',
-  version: 1,
-  band: { kind: 'top-hat', from: 8, to: 14 },
-  emissivity: 0.86,
-  reflectedApparentTemperature: { celsius: 21 },
-};
 const broken: readonly (readonly [string, object])[] = [
   ['no format', { ...minimal, format: undefined }],
   ['another format', { ...minimal, format: 'graybody-result' }],

@@ -12,13 +12,15 @@ import {
   type Uncertainties,
   view,
 } from '../src/index.js';
-import { anyConditions, fixture, grayConditions, K, kelvinBetween, refused } from './support/measurement.js';
-
-const base: Conditions = {
-  band: topHatBand(8, 14),
-  emissivity: 0.86,
-  reflectedApparentTemperature: celsius(21),
-};
+import {
+  anyConditions,
+  paintedConditions as base,
+  fixture,
+  grayConditions,
+  K,
+  kelvinBetween,
+  refused,
+} from './support/measurement.js';
 
 interface BudgetCase {
   readonly name: string;

@@ -9,6 +9,7 @@ import {
   type Conditions,
   type Curve,
   calibratedBand,
+  celsius,
   frameFlag,
   infraredWindow,
   isMeasurementError,
@@ -305,3 +306,23 @@ export function laidOut<Data extends NumericArray>(
 
 /** A temperature whose type says nothing, for readability in tables. */
 export const any = (value: number): AnyKelvin => value as AnyKelvin;
+
+/** A painted surface in a room, 8–14 µm: the plainest conditions. */
+export const paintedConditions: Conditions = {
+  band: topHatBand(8, 14),
+  emissivity: 0.86,
+  reflectedApparentTemperature: celsius(21),
+};
+
+/** The same as a document. */
+export const paintedDocument = {
+  format: 'graybody-conditions',
+  version: 1,
+  band: { kind: 'top-hat', from: 8, to: 14 },
+  emissivity: 0.86,
+  reflectedApparentTemperature: { celsius: 21 },
+};
+
+/** Temperatures that rise by 1.25 K. [K] */
+export const ramp = (count: number, from = 280): number[] =>
+  Array.from({ length: count }, (_, i) => from + 1.25 * i);
